@@ -1,0 +1,79 @@
+//! Text and positions: the files of one run and where in them a thing was written.
+//!
+//! Reads no files; whoever loads a file adds its text here once and refers to it by [`Span`].
+
+/// One text of the run.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Hash, PartialOrd, Ord)]
+pub struct FileId(pub u32);
+
+/// A stretch of one file, in bytes of its decoded text.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Hash, PartialOrd, Ord)]
+pub struct Span {
+    /// The file it lies in.
+    pub file: FileId,
+    /// First byte.
+    pub start: u32,
+    /// One past the last byte.
+    pub end: u32,
+}
+
+/// A span as people count: lines and columns from one, columns in characters.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub struct Place {
+    /// Line of the first character.
+    pub line: u32,
+    /// Column of the first character.
+    pub column: u32,
+    /// Column one past the last character on that first line.
+    pub end_column: u32,
+}
+
+/// A decoded text and the name it is shown by.
+#[derive(Debug)]
+pub struct SourceFile {
+    /// The path as the user or an include line wrote it.
+    pub path: String,
+    /// The decoded text.
+    pub text: String,
+    lines: Vec<u32>,
+}
+
+/// All texts of a run.
+#[derive(Debug, Default)]
+pub struct Sources {
+    files: Vec<SourceFile>,
+}
+
+impl Sources {
+    /// Adds a text under the name it is shown by.
+    pub fn add(&mut self, path: impl Into<String>, text: String) -> FileId {
+        let newlines = text.bytes().enumerate().filter(|(_, byte)| *byte == b'\n');
+        let lines = std::iter::once(0).chain(newlines.map(|(at, _)| at as u32 + 1)).collect();
+        self.files.push(SourceFile { path: path.into(), text, lines });
+        FileId(self.files.len() as u32 - 1)
+    }
+
+    /// The file behind an id.
+    pub fn file(&self, id: FileId) -> &SourceFile {
+        &self.files[id.0 as usize]
+    }
+
+    /// The text that a span covers.
+    pub fn text(&self, span: Span) -> &str {
+        &self.file(span.file).text[span.start as usize..span.end as usize]
+    }
+
+    /// Where a span lies, in lines and columns.
+    pub fn place(&self, span: Span) -> Place {
+        let file = self.file(span.file);
+        let line = file.lines.partition_point(|start| *start <= span.start) - 1;
+        let start = file.lines[line] as usize;
+        let line_end = file.lines.get(line + 1).map_or(file.text.len(), |next| *next as usize - 1);
+        let column = |byte: usize| file.text[start..byte.clamp(start, line_end)].chars().count() as u32 + 1;
+        Place {
+            line: line as u32 + 1,
+            column: column(span.start as usize),
+            end_column: column(span.end as usize),
+        }
+    }
+}
