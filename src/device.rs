@@ -1,7 +1,24 @@
 //! Profiles: a device's datasheet figures, each with unit, conditions and source.
 
+mod catalogue;
+mod spread;
+
+pub use spread::{Situation, Spread, bounds, spread};
+
 use crate::quantity::{Amps, Celsius, Farads, Ohms, Unit, Volts};
 use crate::source::Span;
+
+/// How far a value can be trusted, best first.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Hash, PartialOrd, Ord, serde::Serialize)]
+#[serde(rename_all = "lowercase")]
+pub enum Rank {
+    /// A datasheet's limit or a declared value.
+    Guaranteed,
+    /// A typical value, derated.
+    Typical,
+    /// A default, a class bound, a figure from memory, a rail read off a name.
+    Assumed,
+}
 
 /// The process family that sets what is assumed where a profile says nothing.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Hash)]

@@ -9,4 +9,7 @@ pub mod diagnostic;
 pub mod netlist;
 pub mod device;
 pub mod budget;
+pub mod circuit;
+pub mod block;
+pub mod solve;
 pub mod rule;

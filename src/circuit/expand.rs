@@ -1,0 +1,471 @@
+//! Subcircuits expanded into one flat list of nets and elements.
+
+use crate::budget::Budget;
+use crate::circuit::identify::{Identity, Misfit, identify};
+use crate::circuit::scope::{Definitions, Fault, Parameters, model};
+use crate::circuit::values::{self, Passive};
+use crate::circuit::{Circuit, Element, ElementId, ElementKind, Net, NetId, OpAmp};
+use crate::device::{Catalogue, Pin};
+use crate::diagnostic::{Diagnostic, Severity};
+use crate::netlist::{Assignment, Kind, Netlist, Passive as Stated, Scope, Statement, Value, Waveform};
+use crate::source::{Sources, Span, matches};
+use rustc_hash::FxHashMap;
+use smallvec::SmallVec;
+
+/// Calls may nest this deep.
+const DEPTH: usize = 40;
+/// A board may have this many elements once its subcircuits are expanded.
+const ELEMENTS: usize = 2_000_000;
+
+/// Expands a netlist while nets and elements are collected.
+pub(super) struct Expander<'a> {
+    pub(super) sources: &'a Sources,
+    netlist: &'a Netlist,
+    pub(super) budget: &'a Budget,
+    catalogue: &'a Catalogue,
+    definitions: Definitions,
+    pub(super) circuit: Circuit,
+    pub(super) faults: Vec<Diagnostic>,
+    names: FxHashMap<String, NetId>,
+    /// Where zero-ohm links have moved each net; empty where there are none.
+    pub(super) joined: Vec<NetId>,
+    known: FxHashMap<String, Option<Identity>>,
+    buffer: String,
+    full: bool,
+}
+
+/// One level while it is expanded: where its names lead.
+struct Level<'l> {
+    /// Path before names, empty at the top, else with a dot behind.
+    path: &'l str,
+    /// Nets of the definition's ports by lower-case name.
+    ports: FxHashMap<String, NetId>,
+    /// The definition that this is the body of.
+    definition: Option<usize>,
+    parameters: Parameters<'l>,
+    depth: usize,
+}
+
+impl<'a> Expander<'a> {
+    pub(super) fn new(
+        sources: &'a Sources,
+        netlist: &'a Netlist,
+        budget: &'a Budget,
+        catalogue: &'a Catalogue,
+    ) -> Self {
+        let mut expander = Expander {
+            sources,
+            netlist,
+            budget,
+            catalogue,
+            definitions: Definitions::of(sources, netlist),
+            circuit: Circuit::default(),
+            faults: Vec::new(),
+            names: FxHashMap::default(),
+            joined: Vec::new(),
+            known: FxHashMap::default(),
+            buffer: String::new(),
+            full: false,
+        };
+        let ground = expander.add_net("0".to_owned(), None);
+        expander.circuit.nets[0].ground = true;
+        for name in ["0", "gnd", "gnd!"] {
+            expander.names.insert(name.to_owned(), ground);
+        }
+        for name in &budget.grounds {
+            expander.names.insert(name.text.to_ascii_lowercase(), ground);
+        }
+        expander
+    }
+
+    /// Expands everything from the top.
+    pub(super) fn expand(&mut self) {
+        let netlist = self.netlist;
+        for name in &netlist.globals {
+            let text = self.sources.text(*name).to_ascii_lowercase();
+            if !self.names.contains_key(&text) {
+                let net = self.add_net(self.sources.text(*name).to_owned(), Some(*name));
+                self.names.insert(text, net);
+            }
+        }
+        let mut level = Level {
+            path: "",
+            ports: FxHashMap::default(),
+            definition: None,
+            parameters: Parameters::default(),
+            depth: 0,
+        };
+        let mut faults = Vec::new();
+        level.parameters.assign(self.sources, &netlist.top.parameters, None, &mut faults);
+        self.report(faults);
+        self.scope(&netlist.top, &level);
+    }
+
+    pub(super) fn add_net(&mut self, name: String, span: Option<Span>) -> NetId {
+        let net = Net {
+            labelled: values::labelled(&name),
+            unconnected: values::unconnected(&name),
+            name,
+            span,
+            ground: false,
+            declared: false,
+        };
+        self.circuit.nets.push(net);
+        NetId(self.circuit.nets.len() as u32 - 1)
+    }
+
+    /// The top-level net of a name, in any case.
+    pub(super) fn find_net(&mut self, name: &str) -> Option<NetId> {
+        self.buffer.clear();
+        self.buffer.push_str(name);
+        self.buffer.make_ascii_lowercase();
+        let net = self.names.get(self.buffer.as_str()).copied()?;
+        Some(self.joined.get(net.0 as usize).copied().unwrap_or(net))
+    }
+
+    pub(super) fn add_element(&mut self, element: Element) -> ElementId {
+        self.circuit.elements.push(element);
+        ElementId(self.circuit.elements.len() as u32 - 1)
+    }
+
+    fn report(&mut self, faults: Vec<Fault>) {
+        self.faults.extend(
+            faults
+                .into_iter()
+                .map(|(span, reason)| Diagnostic::at("unreadable-value", Severity::Warning, span, reason)),
+        );
+    }
+
+    fn net(&mut self, word: Span, level: &Level) -> NetId {
+        let text = self.sources.text(word);
+        if text == "?" {
+            return self.add_net(format!("{}?", level.path), Some(word));
+        }
+        self.buffer.clear();
+        self.buffer.push_str(text);
+        self.buffer.make_ascii_lowercase();
+        if let Some(net) = level.ports.get(self.buffer.as_str()) {
+            return *net;
+        }
+        // Ground and globals are one net at every level.
+        if let Some(net) = self.names.get(self.buffer.as_str())
+            && (level.path.is_empty() || net.0 == 0 || self.is_global(text))
+        {
+            return *net;
+        }
+        let name = format!("{}{text}", level.path);
+        let key = name.to_ascii_lowercase();
+        if let Some(net) = self.names.get(&key) {
+            return *net;
+        }
+        let net = self.add_net(name, Some(word));
+        self.names.insert(key, net);
+        net
+    }
+
+    fn is_global(&self, name: &str) -> bool {
+        self.netlist.globals.iter().any(|global| self.sources.text(*global).eq_ignore_ascii_case(name))
+    }
+
+    fn scope(&mut self, scope: &'a Scope, level: &Level) {
+        for statement in &scope.elements {
+            if self.full {
+                return;
+            }
+            self.statement(statement, scope, level);
+        }
+    }
+
+    fn statement(&mut self, statement: &'a Statement, scope: &'a Scope, level: &Level) {
+        let name = format!("{}{}", level.path, self.sources.text(statement.name));
+        if self.budget.absent.iter().any(|absent| matches(&absent.text, &name)) {
+            return;
+        }
+        if self.circuit.elements.len() >= ELEMENTS {
+            self.full = true;
+            self.faults.push(Diagnostic::at(
+                "too-large",
+                Severity::Error,
+                statement.span,
+                format!("the board has more than {ELEMENTS} elements once its subcircuits are expanded; the rest isn't read"),
+            ));
+            return;
+        }
+        let nets: SmallVec<[NetId; 4]> = statement.nodes.iter().map(|word| self.net(*word, level)).collect();
+        let kind = match &statement.kind {
+            Kind::Call { model, parameters } => {
+                return self.call(statement, name, nets, (*model, parameters), level);
+            }
+            Kind::Resistor(stated) => {
+                values::resistor(self.part(&name, Passive::Resistor, stated, scope, level))
+            }
+            Kind::Capacitor(stated) => {
+                ElementKind::Capacitor(self.part(&name, Passive::Capacitor, stated, scope, level))
+            }
+            Kind::Inductor(stated) => {
+                ElementKind::Inductor(self.part(&name, Passive::Inductor, stated, scope, level))
+            }
+            Kind::VoltageSource(waveform) => ElementKind::VoltageSource(self.drive(waveform, level)),
+            Kind::CurrentSource(waveform) => ElementKind::CurrentSource(self.drive(waveform, level)),
+            Kind::VoltageGain(gain) => match self.value(*gain, level) {
+                Some(gain) if gain.is_finite() && gain != 0.0 && nets.len() == 4 => {
+                    ElementKind::VoltageGain(gain)
+                }
+                _ => ElementKind::Unmodelled,
+            },
+            Kind::Diode { .. } if nets.len() == 2 => ElementKind::Diode,
+            Kind::Transistor { .. } => ElementKind::Transistor,
+            Kind::Diode { .. } | Kind::Unmodelled => ElementKind::Unmodelled,
+        };
+        self.add_element(Element { name, nets, kind, span: Some(statement.span) });
+    }
+
+    fn value(&mut self, value: Value, level: &Level) -> Option<f64> {
+        level.parameters.value(self.sources, value).map_err(|fault| self.report(vec![fault])).ok()
+    }
+
+    fn drive(&mut self, waveform: &Waveform, level: &Level) -> crate::circuit::Drive {
+        let dc = waveform.dc.and_then(|value| self.value(value, level));
+        let moves = waveform.ac || waveform.unknown || waveform.span.is_some();
+        values::drive(dc, waveform.span, moves)
+    }
+
+    /// A passive's value: its own, times what a model of it says.
+    fn part(
+        &mut self,
+        name: &str,
+        passive: Passive,
+        stated: &Stated,
+        scope: &'a Scope,
+        level: &Level,
+    ) -> crate::circuit::Part {
+        let mut value =
+            stated.value.and_then(|value| self.value(value, level)).filter(|value| value.is_finite());
+        let mut tolerance = stated.tolerance;
+        let named =
+            stated.model.and_then(|word| model(self.sources, self.netlist, scope, self.sources.text(word)));
+        for assignment in named.map_or(&[][..], |model| &model.parameters) {
+            let key = self.sources.text(assignment.name);
+            let letter = ["r", "c", "l"][passive as usize];
+            if key.eq_ignore_ascii_case(letter) {
+                let factor = level.parameters.evaluate(self.sources, assignment.value).ok();
+                value = value.zip(factor).map(|(value, factor)| value * factor);
+            } else if key.eq_ignore_ascii_case("dev") && tolerance.is_none() {
+                tolerance = percentage(self.sources.text(assignment.value));
+            }
+        }
+        if passive != Passive::Resistor {
+            value = value.filter(|value| 0.0 < *value);
+        }
+        values::part(self.budget, &self.catalogue.assumed, name, passive, value, (tolerance, stated.rating))
+    }
+
+    fn call(
+        &mut self,
+        statement: &'a Statement,
+        name: String,
+        nets: SmallVec<[NetId; 4]>,
+        (model, parameters): (Span, &'a [Assignment]),
+        level: &Level,
+    ) {
+        let text = self.sources.text(model);
+        let found = self.definitions.find(self.netlist, level.definition, text);
+        match self.identity(&name, text, nets.len(), found) {
+            Ok(Some(identity)) => self.op_amp(statement, name, text, &nets, identity),
+            Ok(None) => match found {
+                Some(index) if self.opens(index, 0) => {
+                    self.open(statement, name, nets, parameters, index, level)
+                }
+                _ => {
+                    self.add_element(Element {
+                        name,
+                        nets,
+                        kind: ElementKind::Unmodelled,
+                        span: Some(statement.span),
+                    });
+                }
+            },
+            Err(misfit) => {
+                let fault = self.misfit(statement, model, &name, misfit);
+                self.faults.push(fault);
+                self.add_element(Element {
+                    name,
+                    nets,
+                    kind: ElementKind::Unmodelled,
+                    span: Some(statement.span),
+                });
+            }
+        }
+    }
+
+    /// What a call is; the answer for a model name with a count of nodes is remembered where no
+    /// designator in the budget can change it.
+    fn identity(
+        &mut self,
+        name: &str,
+        model: &str,
+        nodes: usize,
+        found: Option<usize>,
+    ) -> Result<Option<Identity>, Misfit> {
+        let key = format!("{} {nodes} {found:?}", model);
+        if self.budget.devices.is_empty()
+            && let Some(known) = self.known.get(&key)
+        {
+            return Ok(known.clone());
+        }
+        let ports: Option<Vec<&str>> = found.map(|index| {
+            self.netlist.subcircuits[index].ports.iter().map(|port| self.sources.text(*port)).collect()
+        });
+        let identity = identify(self.catalogue, self.budget, (name, model), nodes, ports.as_deref())?;
+        self.known.insert(key, identity.clone());
+        Ok(identity)
+    }
+
+    fn misfit(&self, statement: &Statement, model: Span, name: &str, misfit: Misfit) -> Diagnostic {
+        let model_name = self.sources.text(model);
+        match misfit {
+            Misfit::NoProfile(at) => {
+                let choice = &self.budget.devices[at];
+                let profile = choice.profile.as_ref().unwrap_or(&choice.name);
+                Diagnostic::at("unknown-device", Severity::Error, profile.span, format!("no profile is named `{}`", profile.text))
+                    .help("name a profile that is embedded or given with --devices, or state `technology:`")
+            }
+            Misfit::Count(found, expected) => Diagnostic::at(
+                "pin-map",
+                Severity::Error,
+                statement.span,
+                format!("{name} calls {model_name} with {found} nodes, its pin order has {expected}; it is not analysed"),
+            )
+            .help(format!("budget: devices: {{ {model_name}: {{ pins: [...] }} }} gives the order of the {found} nodes")),
+        }
+    }
+
+    fn op_amp(
+        &mut self,
+        statement: &Statement,
+        name: String,
+        model: &str,
+        nets: &[NetId],
+        identity: Identity,
+    ) {
+        let pin = |wanted: Pin| identity.pins.iter().position(|pin| *pin == wanted).map(|at| nets[at]);
+        let (Some(non_inverting), Some(inverting), Some(output)) =
+            (pin(Pin::NonInverting), pin(Pin::Inverting), pin(Pin::Output))
+        else {
+            self.faults.push(Diagnostic::at(
+                "pin-map",
+                Severity::Error,
+                statement.span,
+                format!("the pin order of {name} lacks an input or the output; it is not analysed"),
+            ));
+            self.add_element(Element {
+                name,
+                nets: nets.into(),
+                kind: ElementKind::Unmodelled,
+                span: Some(statement.span),
+            });
+            return;
+        };
+        let index = self.circuit.op_amps.len() as u32;
+        let (positive, negative) = (pin(Pin::PositiveSupply), pin(Pin::NegativeSupply));
+        let element = self.add_element(Element {
+            name: name.clone(),
+            nets: nets.into(),
+            kind: ElementKind::OpAmp(index),
+            span: Some(statement.span),
+        });
+        self.circuit.op_amps.push(OpAmp {
+            element,
+            name,
+            model: model.to_owned(),
+            profile: identity.profile,
+            technology: identity.technology,
+            non_inverting,
+            inverting,
+            output,
+            positive,
+            negative,
+        });
+    }
+
+    /// Whether a definition is opened: it calls an op amp, or holds linear elements alone.
+    fn opens(&self, index: usize, depth: usize) -> bool {
+        if depth > DEPTH {
+            return true;
+        }
+        let body = &self.netlist.subcircuits[index].body;
+        let mut linear = true;
+        for statement in &body.elements {
+            match &statement.kind {
+                Kind::Resistor(_)
+                | Kind::Capacitor(_)
+                | Kind::Inductor(_)
+                | Kind::VoltageSource(_)
+                | Kind::CurrentSource(_)
+                | Kind::VoltageGain(_) => {}
+                Kind::Call { model, .. } => {
+                    let name = self.sources.text(*model);
+                    let op_amp = self.catalogue.find(name).is_some()
+                        || self.budget.devices.iter().any(|choice| matches(&choice.name.text, name));
+                    let inner = self.definitions.find(self.netlist, Some(index), name);
+                    if op_amp || inner.is_some_and(|inner| self.opens(inner, depth + 1)) {
+                        return true;
+                    }
+                    linear = false;
+                }
+                _ => linear = false,
+            }
+        }
+        linear
+    }
+
+    fn open(
+        &mut self,
+        statement: &'a Statement,
+        name: String,
+        nets: SmallVec<[NetId; 4]>,
+        given: &'a [Assignment],
+        index: usize,
+        level: &Level,
+    ) {
+        let definition = &self.netlist.subcircuits[index];
+        let fault = if level.depth >= DEPTH {
+            Some((
+                "recursive-subcircuit",
+                format!("calls nest more than {DEPTH} deep at {name}; does the definition call itself?"),
+            ))
+        } else if definition.ports.len() != nets.len() {
+            let (found, expected) = (nets.len(), definition.ports.len());
+            Some(("pin-count", format!("{name} has {found} nodes, its definition has {expected} ports")))
+        } else {
+            None
+        };
+        if let Some((kind, message)) = fault {
+            self.faults.push(Diagnostic::at(kind, Severity::Error, statement.span, message));
+            self.add_element(Element {
+                name,
+                nets,
+                kind: ElementKind::Unmodelled,
+                span: Some(statement.span),
+            });
+            return;
+        }
+        let ports = definition.ports.iter().map(|port| self.sources.text(*port).to_ascii_lowercase());
+        let ports = ports.zip(nets).collect();
+        let mut parameters = Parameters::within(&level.parameters);
+        let mut faults = Vec::new();
+        parameters.assign(self.sources, &definition.defaults, None, &mut faults);
+        parameters.assign(self.sources, given, Some(&level.parameters), &mut faults);
+        parameters.assign(self.sources, &definition.body.parameters, None, &mut faults);
+        self.report(faults);
+        let path = format!("{name}.");
+        let inner = Level { path: &path, ports, definition: Some(index), parameters, depth: level.depth + 1 };
+        self.scope(&definition.body, &inner);
+    }
+}
+
+/// `0.1%` or `0.001` as a share.
+fn percentage(text: &str) -> Option<f64> {
+    let (number, scale) = text.strip_suffix('%').map_or((text, 1.0), |number| (number, 0.01));
+    number.trim().parse::<f64>().ok().map(|value| value * scale).filter(|value| (0.0..1.0).contains(value))
+}

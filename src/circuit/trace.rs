@@ -1,0 +1,91 @@
+//! Which nets have a known voltage: traced through sources, declared, or read off a name.
+
+use crate::circuit::declare::Declared;
+use crate::circuit::values::stated_voltage;
+use crate::circuit::{Circuit, Drive, ElementKind, NetId, Potential, Tie};
+use crate::device::Rank;
+use rustc_hash::FxHashMap;
+use std::collections::VecDeque;
+
+/// Walks from ground through voltage sources, reversed and chained ones included.
+pub(super) fn sources(circuit: &mut Circuit) {
+    circuit.ties = vec![None; circuit.nets.len()];
+    circuit.potentials = vec![None; circuit.nets.len()];
+    let mut on_net: FxHashMap<NetId, Vec<(NetId, Drive, f64)>> = FxHashMap::default();
+    for element in &circuit.elements {
+        if let (ElementKind::VoltageSource(drive), [plus, minus]) = (&element.kind, element.nets.as_slice()) {
+            on_net.entry(*minus).or_default().push((*plus, *drive, 1.0));
+            on_net.entry(*plus).or_default().push((*minus, *drive, -1.0));
+        }
+    }
+    let zero = Potential { nominal: 0.0, range: Some((0.0, 0.0)), rank: Rank::Guaranteed };
+    let mut queue = VecDeque::from([(Circuit::GROUND, zero, Tie::Source)]);
+    let mut seen = vec![false; circuit.nets.len()];
+    seen[0] = true;
+    while let Some((net, from, tie)) = queue.pop_front() {
+        for (other, drive, sign) in on_net.get(&net).map_or(&[][..], Vec::as_slice) {
+            if std::mem::replace(&mut seen[other.0 as usize], true) {
+                continue;
+            }
+            let tie = if drive.moves { Tie::MovingSource } else { tie };
+            let potential = step(from, *drive, *sign);
+            circuit.ties[other.0 as usize] = Some(tie);
+            circuit.potentials[other.0 as usize] = Some(potential);
+            queue.push_back((*other, potential, tie));
+        }
+    }
+}
+
+/// The potential behind a source, seen from the net before it.
+fn step(from: Potential, drive: Drive, sign: f64) -> Potential {
+    let middle = drive.span.map(|(low, high)| (low + high) / 2.0);
+    let own = drive.span.or(if drive.moves {
+        None
+    } else {
+        Some((drive.dc.unwrap_or(0.0), drive.dc.unwrap_or(0.0)))
+    });
+    let nominal = from.nominal + sign * drive.dc.or(middle).unwrap_or(0.0);
+    let range = from.range.zip(own).map(|((low, high), (least, greatest))| {
+        let (a, b) = (sign * least, sign * greatest);
+        (low + a.min(b), high + a.max(b))
+    });
+    Potential { nominal, range, rank: Rank::Guaranteed }
+}
+
+/// Takes what the budget declares; it stands before what sources say.
+pub(super) fn declared(circuit: &mut Circuit, declared: Declared) {
+    for (net, voltage) in declared.rails {
+        let deviation = voltage.deviation;
+        circuit.ties[net.0 as usize] = Some(Tie::Rail);
+        circuit.potentials[net.0 as usize] = Some(Potential {
+            nominal: voltage.nominal,
+            range: deviation.map(|by| (voltage.nominal - by, voltage.nominal + by)),
+            rank: Rank::Guaranteed,
+        });
+    }
+    for (net, range) in declared.signals {
+        let traced = circuit.potentials[net.0 as usize];
+        circuit.ties[net.0 as usize] = Some(Tie::Signal);
+        circuit.potentials[net.0 as usize] = match range {
+            Some((low, high)) => Some(Potential {
+                nominal: (low + high) / 2.0,
+                range: Some((low, high)),
+                rank: Rank::Guaranteed,
+            }),
+            None => traced.filter(|potential| potential.range.is_some_and(|(low, high)| low < high)),
+        };
+    }
+}
+
+/// Reads voltages off names such as `+12V` where nothing else tells them.
+pub(super) fn names(circuit: &mut Circuit) {
+    for net in circuit.net_ids() {
+        let at = net.0 as usize;
+        if circuit.ties[at].is_none()
+            && circuit.potentials[at].is_none()
+            && let Some(volts) = stated_voltage(&circuit.nets[at].name)
+        {
+            circuit.potentials[at] = Some(Potential { nominal: volts, range: None, rank: Rank::Assumed });
+        }
+    }
+}

@@ -1,0 +1,374 @@
+//! The board composed of its blocks: what each block draws from those that feed it, and one row of
+//! transfers from the board's primary quantities for every output.
+
+use crate::block::{AmpId, Layout, Port, Role};
+use crate::circuit::{Circuit, NetId};
+use crate::device::{Catalogue, Rank};
+use crate::solve::device::{Device, Supply};
+use crate::solve::model::{Fault, Model};
+use crate::solve::{Excitation, LoadStamp, Node, Solved, regenerates};
+use rustc_hash::FxHashMap;
+
+/// Rows are swept forward until none moves by more than this share of its largest entry.
+const STILL: f64 = 1e-13;
+/// Random boards with weak op amps took 6 sweeps at most.
+const MOST_SWEEPS: usize = 40;
+
+/// What a primary quantity is.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum PrimaryKind {
+    /// The constant one, for the voltages of floating sources.
+    Constant,
+    /// A signal net.
+    Signal,
+    /// The difference of a declared pair.
+    Difference,
+    /// The mean of a declared pair.
+    Common,
+    /// A supply or declared voltage.
+    Rail,
+    /// A fixed voltage.
+    Reference,
+    /// A current, ampere.
+    Current,
+    /// The output of a block that couldn't be solved.
+    Unsolved,
+}
+
+/// Something that the board is driven by.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Primary {
+    /// What it is.
+    pub kind: PrimaryKind,
+    /// Its name in reports.
+    pub name: String,
+    /// Its value at rest, volt or ampere.
+    pub rest: f64,
+    /// Its range, where known; a rail's is its nominal value alone.
+    pub range: Option<(f64, f64)>,
+    /// What a rail may deviate to either side.
+    pub deviation: f64,
+    /// How far value and range can be trusted.
+    pub rank: Rank,
+    /// How far the deviation can be trusted.
+    pub deviation_rank: Rank,
+}
+
+/// Transfers from primaries, by their index, in rising order.
+pub type Row = Vec<(u32, f64)>;
+
+/// A board with its blocks as equations.
+#[derive(Debug)]
+pub struct Board<'a> {
+    /// The flat board.
+    pub circuit: &'a Circuit,
+    /// How it is cut.
+    pub layout: &'a Layout,
+    /// Profiles and what is assumed.
+    pub catalogue: &'a Catalogue,
+    /// One for each op amp of the circuit.
+    pub devices: Vec<Device>,
+    /// One for each block.
+    pub models: Vec<Model>,
+    /// What drives the board; the first is the constant.
+    pub primaries: Vec<Primary>,
+    /// Block and place within it of each amplifier.
+    pub place: Vec<(usize, usize)>,
+    /// Row of each amplifier's output.
+    pub rows: Vec<Row>,
+    fixed: FxHashMap<NetId, Row>,
+    /// Index of the first current among the primaries.
+    pub first_current: usize,
+}
+
+impl<'a> Board<'a> {
+    /// Composes a board; `supplies` holds the supplies of each op amp.
+    pub fn new(
+        circuit: &'a Circuit,
+        layout: &'a Layout,
+        catalogue: &'a Catalogue,
+        supplies: Vec<Option<Supply>>,
+    ) -> Board<'a> {
+        let devices: Vec<Device> = circuit
+            .op_amps
+            .iter()
+            .zip(supplies)
+            .map(|(op_amp, supply)| Device::new(circuit, catalogue, op_amp, supply))
+            .collect();
+        let models = layout.blocks.iter().map(|block| Model::new(circuit, layout, block, &devices)).collect();
+        let mut place = vec![(usize::MAX, 0); layout.amps.len()];
+        for (at, block) in layout.blocks.iter().enumerate() {
+            for (member, amp) in block.members.iter().enumerate() {
+                place[amp.0 as usize] = (at, member);
+            }
+        }
+        let mut board = Board {
+            circuit,
+            layout,
+            catalogue,
+            devices,
+            models,
+            primaries: Vec::new(),
+            place,
+            rows: vec![Row::new(); layout.amps.len()],
+            fixed: FxHashMap::default(),
+            first_current: 0,
+        };
+        board.load();
+        board.enumerate();
+        board.sweep();
+        board
+    }
+
+    /// The transfers of a held net from the primaries; empty for ground.
+    pub fn row(&self, port: &Port) -> &[(u32, f64)] {
+        match port.role {
+            Role::Output(amp) if !self.fixed.contains_key(&port.net) => &self.rows[amp.0 as usize],
+            _ => self.fixed.get(&port.net).map_or(&[], Vec::as_slice),
+        }
+    }
+
+    /// What a quantity gains from each primary, given its transfers from a block's ports, from the
+    /// currents that feed the block, and its constant part.
+    pub fn compose(&self, block: usize, ports: &[f64], currents: &[f64], constant: f64) -> Row {
+        let mut terms: Row = Vec::with_capacity(8);
+        for (port, transfer) in self.models[block].ports.iter().zip(ports) {
+            if *transfer != 0.0 {
+                terms.extend(self.row(port).iter().map(|(at, entry)| (*at, entry * transfer)));
+            }
+        }
+        let feeds = &self.layout.blocks[block].currents;
+        terms.extend(
+            feeds.iter().zip(currents).map(|(at, transfer)| (self.first_current as u32 + at, *transfer)),
+        );
+        terms.push((0, constant));
+        terms.sort_by_key(|(at, _)| *at);
+        let mut row: Row = Vec::with_capacity(terms.len());
+        for (at, entry) in terms {
+            match row.last_mut() {
+                Some((last, sum)) if *last == at => *sum += entry,
+                _ => row.push((at, entry)),
+            }
+        }
+        row.retain(|(_, entry)| *entry != 0.0);
+        row
+    }
+
+    /// From the last block to the first: each is solved under its load and reduced to what it draws from
+    /// the outputs that feed it.
+    fn load(&mut self) {
+        for at in (0..self.models.len()).rev() {
+            let fault = self.verify(at);
+            self.models[at].fault = self.models[at].fault.take().or(fault);
+            let Some(draws) = self.draws(at) else { continue };
+            for (amp, net, siemens) in draws {
+                let (block, _) = self.place[amp.0 as usize];
+                let output = self.layout.amp(amp).output;
+                let role = self.layout.role(net);
+                let model = &mut self.models[block];
+                let (Some(Node::Unknown(output)), node) = (model.node(output), model.port(net, role)) else {
+                    continue;
+                };
+                model.network.loads.push(LoadStamp { output, node, siemens });
+            }
+        }
+    }
+
+    /// What makes a block's figures meaningless though its equations stand.
+    fn verify(&self, at: usize) -> Option<Fault> {
+        let model = &self.models[at];
+        if model.fault.is_some() {
+            return None;
+        }
+        let twin = model.nominal.twin(|amp| model.op_amps[amp].is_some());
+        if let Err(singular) = Solved::new(&model.network, twin) {
+            return Some(Fault::NoTwin(model.net(singular.unknown)));
+        }
+        if let Err(singular) = Solved::new(&model.network, model.nominal.clone()) {
+            return Some(Fault::Singular(model.net(singular.unknown)));
+        }
+        regenerates(&model.network, &model.nominal).then_some(Fault::Regenerative)
+    }
+
+    /// Currents that a block draws from outputs for a volt at a net: output, net, siemens.
+    fn draws(&self, at: usize) -> Option<Vec<(AmpId, NetId, f64)>> {
+        let (model, block) = (&self.models[at], &self.layout.blocks[at]);
+        let fed: Vec<(usize, AmpId)> = model
+            .ports
+            .iter()
+            .enumerate()
+            .filter_map(|(place, port)| match port.role {
+                Role::Output(amp) => Some((place, amp)),
+                _ => None,
+            })
+            .collect();
+        if fed.is_empty() {
+            return None;
+        }
+        let solved = Solved::new(&model.network, model.nominal.clone()).ok()?;
+        let counted = if block.owns_network { model.feedback_branches } else { 0 };
+        let mut draws = Vec::new();
+        for (column, port) in model.ports.iter().enumerate() {
+            let state = solved.forward(&Excitation::port(model.ports.len(), column));
+            let drawn =
+                solved.drawn(&state, |branch| branch < counted, |amp| block.owns_network || model.held(amp));
+            for (place, amp) in &fed {
+                if drawn[*place] != 0.0 {
+                    draws.push((*amp, port.net, drawn[*place]));
+                }
+            }
+        }
+        Some(draws)
+    }
+
+    fn enumerate(&mut self) {
+        let circuit = self.circuit;
+        self.primaries.push(Primary {
+            kind: PrimaryKind::Constant,
+            name: String::new(),
+            rest: 1.0,
+            range: Some((1.0, 1.0)),
+            deviation: 0.0,
+            rank: Rank::Guaranteed,
+            deviation_rank: Rank::Guaranteed,
+        });
+        for pair in &circuit.pairs {
+            let at = self.primaries.len() as u32;
+            self.primaries.push(signal(PrimaryKind::Difference, pair.name.clone(), pair.difference));
+            self.primaries.push(signal(PrimaryKind::Common, format!("{} common", pair.name), pair.common));
+            self.fixed.insert(pair.positive, vec![(at, 0.5), (at + 1, 1.0)]);
+            self.fixed.insert(pair.negative, vec![(at, -0.5), (at + 1, 1.0)]);
+        }
+        for net in circuit.net_ids() {
+            let primary = match self.layout.role(net) {
+                Role::Signal | Role::Rail | Role::Reference if !self.fixed.contains_key(&net) => {
+                    self.held(net)
+                }
+                Role::Output(amp) if !self.solved(amp) => {
+                    signal(PrimaryKind::Unsolved, circuit.net(net).name.clone(), None)
+                }
+                _ => continue,
+            };
+            self.fixed.insert(net, vec![(self.primaries.len() as u32, 1.0)]);
+            self.primaries.push(primary);
+        }
+        self.first_current = self.primaries.len();
+        let currents = circuit.currents.iter();
+        self.primaries
+            .extend(currents.map(|input| signal(PrimaryKind::Current, input.name.clone(), input.range)));
+    }
+
+    /// Whether an amplifier's output follows from its block.
+    pub fn solved(&self, amp: AmpId) -> bool {
+        self.models[self.place[amp.0 as usize].0].fault.is_none()
+    }
+
+    fn held(&self, net: NetId) -> Primary {
+        let potential = self.circuit.potential(net);
+        let name = self.circuit.net(net).name.clone();
+        let kind = match self.layout.role(net) {
+            Role::Rail => PrimaryKind::Rail,
+            Role::Reference => PrimaryKind::Reference,
+            _ => PrimaryKind::Signal,
+        };
+        let range = potential.and_then(|potential| potential.range);
+        let mut primary = signal(kind, name, range);
+        let Some(potential) = potential else { return primary };
+        primary.rest = potential.nominal;
+        primary.rank = potential.rank;
+        if kind != PrimaryKind::Signal {
+            primary.range = Some((potential.nominal, potential.nominal));
+            if kind == PrimaryKind::Rail {
+                (primary.deviation, primary.deviation_rank) =
+                    rail_deviation(self.circuit, net, self.catalogue.assumed.rail);
+            }
+        }
+        primary
+    }
+
+    fn sweep(&mut self) {
+        let steps: Vec<Option<Step>> = (0..self.models.len()).map(|at| self.step(at)).collect();
+        let looks_ahead = steps.iter().flatten().any(|step| step.looks_ahead);
+        for _ in 0..MOST_SWEEPS {
+            let mut moved = false;
+            for (at, step) in steps.iter().enumerate() {
+                let Some(step) = step else { continue };
+                for (member, (ports, currents, constant)) in step.outputs.iter().enumerate() {
+                    let row = self.compose(at, ports, currents, *constant);
+                    let amp = self.layout.blocks[at].members[member].0 as usize;
+                    moved |= looks_ahead && differs(&self.rows[amp], &row);
+                    self.rows[amp] = row;
+                }
+            }
+            if !moved {
+                break;
+            }
+        }
+    }
+
+    fn step(&self, at: usize) -> Option<Step> {
+        let model = &self.models[at];
+        if model.fault.is_some() {
+            return None;
+        }
+        let solved = Solved::new(&model.network, model.nominal.clone()).ok()?;
+        let outputs = (0..model.network.members).map(|member| {
+            let output = model.network.amps[member].output.map_or(Node::Ground, Node::Unknown);
+            let weights = solved.adjoint(&[(output, 1.0)]);
+            let currents =
+                self.currents(at).map(|(into, from)| weights.current(into) - weights.current(from));
+            (solved.from_ports(&weights), currents.collect(), solved.from_shorts(&weights))
+        });
+        let looks_ahead = model.ports.iter().any(|port| match port.role {
+            Role::Output(amp) => at < self.place[amp.0 as usize].0,
+            _ => false,
+        });
+        Some(Step { outputs: outputs.collect(), looks_ahead })
+    }
+
+    /// The nodes that each current of a block flows into and out of.
+    pub fn currents(&self, block: usize) -> impl Iterator<Item = (Node, Node)> + '_ {
+        let model = &self.models[block];
+        self.layout.blocks[block].currents.iter().map(|at| {
+            let current = &self.circuit.currents[*at as usize];
+            let node = |net: NetId| model.node(net).unwrap_or(Node::Ground);
+            (node(current.into), node(current.from))
+        })
+    }
+}
+
+/// Transfers of a block's outputs from its ports, its currents, and its constant part.
+struct Step {
+    outputs: Vec<(Vec<f64>, Vec<f64>, f64)>,
+    looks_ahead: bool,
+}
+
+fn signal(kind: PrimaryKind, name: String, range: Option<(f64, f64)>) -> Primary {
+    Primary {
+        kind,
+        name,
+        rest: range.map_or(0.0, |(low, high)| (low + high) / 2.0),
+        range,
+        deviation: 0.0,
+        rank: Rank::Guaranteed,
+        deviation_rank: Rank::Guaranteed,
+    }
+}
+
+/// What a rail may deviate: as declared, else the assumed share of its voltage.
+pub(super) fn rail_deviation(circuit: &Circuit, net: NetId, assumed: f64) -> (f64, Rank) {
+    let Some(potential) = circuit.potential(net) else { return (0.0, Rank::Assumed) };
+    if circuit.net(net).ground {
+        return (0.0, Rank::Guaranteed);
+    }
+    match potential.range {
+        Some((low, high)) if low < high => ((high - low) / 2.0, Rank::Guaranteed),
+        _ => (potential.nominal.abs() * assumed, Rank::Assumed),
+    }
+}
+
+fn differs(old: &Row, new: &Row) -> bool {
+    let most = new.iter().fold(0.0f64, |most, (_, entry)| most.max(entry.abs()));
+    old.len() != new.len()
+        || old.iter().zip(new).any(|((a, x), (b, y))| a != b || STILL * most < (x - y).abs())
+}
