@@ -2,6 +2,10 @@
 //!
 //! Reads no files; whoever loads a file adds its text here once and refers to it by [`Span`].
 
+mod words;
+
+pub use words::{nearest, quote};
+
 /// One text of the run.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Hash, PartialOrd, Ord)]
 pub struct FileId(pub u32);
