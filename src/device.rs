@@ -3,6 +3,10 @@
 use crate::quantity::{Amps, Celsius, Farads, Ohms, Unit, Volts};
 use crate::source::Span;
 
+mod read;
+
+pub use read::{pin, read_assumed, read_profiles, technology};
+
 /// The process family that sets what is assumed where a profile says nothing.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Hash)]
 pub enum Technology {
