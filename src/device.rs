@@ -5,7 +5,7 @@ use crate::source::Span;
 
 mod read;
 
-pub use read::{pin, read_assumed, read_profiles, technology};
+pub use read::{read_assumed, read_pins, read_profiles, technology};
 
 /// The process family that sets what is assumed where a profile says nothing.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Hash)]

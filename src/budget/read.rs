@@ -4,14 +4,14 @@ use super::{
     Budget, DeviceChoice, Gain, Load, Name, Pair, Part, Signal, StageBudget, StatedLimit, Tolerance,
     Toleranced, Waiver,
 };
-use crate::device::{pin, technology};
+use crate::device::{read_pins, technology};
 use crate::diagnostic::Diagnostic;
-use crate::quantity::{
-    Celsius, Farads, Hertz, Ohms, QuantityFault, Unit, parse, parse_any, parse_range, parse_range_of,
-    parse_share, parse_toleranced,
-};
-use crate::source::{FileId, Sources, quote};
+use crate::quantity::{Unit, parse, parse_range, parse_range_of, parse_toleranced};
+use crate::source::{FileId, Sources};
 use crate::yaml::{self, Fields, Kind, Node, Reader, choice};
+use values::{band, capacitance, date, deviation, magnitude, resistance, stated, temperature, travel};
+
+mod values;
 
 const KEYS: [&str; 13] = [
     "board",
@@ -29,22 +29,13 @@ const KEYS: [&str; 13] = [
     "waivers",
 ];
 
-/// Figures whose limit may be a share of the output span.
-const OF_SPAN: [&str; 3] = ["bias-error", "offset-error", "common-error"];
-
 /// Reads a budget. A fault of shape ends the reading and leaves an empty budget; every fault of value is
 /// reported and its declaration left out. An empty text is an empty budget.
 pub fn read(sources: &Sources, file: FileId) -> (Budget, Vec<Diagnostic>) {
     let mut reader = Reader::default();
-    let budget = yaml::read(sources, file)
+    let read = yaml::read(sources, file)
         .and_then(|root| root.map_or(Ok(Budget::default()), |root| budget(&mut reader, &root)));
-    match budget {
-        Ok(budget) => (budget, reader.faults),
-        Err(shape) => {
-            reader.faults.push(shape);
-            (Budget::default(), reader.faults)
-        }
-    }
+    reader.finish(read)
 }
 
 /// What reading a part of a budget gives: `Err` is a fault of shape.
@@ -171,12 +162,11 @@ fn load(reader: &mut Reader, name: &Name, node: &Node) -> Read<Option<Load>> {
 
 fn device(reader: &mut Reader, name: &Name, node: &Node) -> Read<Option<DeviceChoice>> {
     let fields = reader.fields(node, "a device", &["profile", "technology", "pins"])?;
-    let pins = fields.get("pins").map(|_| reader.values(&fields, "pins", pin)).transpose()?;
     Ok(Some(DeviceChoice {
         name: name.clone(),
         profile: reader.name(&fields, "profile")?,
         technology: reader.value(&fields, "technology", technology)?,
-        pins,
+        pins: read_pins(reader, &fields)?,
     }))
 }
 
@@ -184,7 +174,7 @@ fn stage(reader: &mut Reader, node: &Node) -> Read<Option<StageBudget>> {
     let keys = ["match", "gain", "limits", "supply", "zero"];
     let fields = reader.fields(node, "an entry of `stages`", &keys)?;
     reader.need(&fields, "match");
-    let unused = |text: &str| choice(text, "what the zero end is", &[("unused", true)]);
+    let unused = |text: &str| choice(text, "a word for the zero end", &[("unused", true)]);
     let stage = StageBudget {
         matches: reader.names(&fields, "match")?,
         gain: fields.get("gain").map_or(Ok(None), |node| gain(reader, node))?,
@@ -218,18 +208,6 @@ fn limit(reader: &mut Reader, name: &Name, node: &Node) -> Read<Option<StatedLim
     }))
 }
 
-fn stated(text: &str, figure: &str) -> Result<(f64, Unit, bool), QuantityFault> {
-    let Some(share) = text.trim().strip_suffix("of span") else {
-        return parse_any(text).map(|(value, unit)| (value, unit, false));
-    };
-    if !OF_SPAN.contains(&figure) {
-        let message =
-            format!("a limit of {} can't be a share of the span, found {}", quote(figure), quote(text));
-        return Err(QuantityFault::new(message));
-    }
-    parse_share(share).map(|value| (value, Unit::One, true))
-}
-
 fn supply(reader: &mut Reader, fields: &Fields<'_>) -> Read<Option<(Name, Name)>> {
     let Some(node) = fields.get("supply") else { return Ok(None) };
     let nets = reader.names(fields, "supply")?;
@@ -259,86 +237,6 @@ fn waiver(reader: &mut Reader, node: &Node) -> Read<Option<Waiver>> {
     // A date that can't be read must not turn into a waiver without end.
     let dated = until.is_some() || fields.get("until").is_none();
     Ok(Some(Waiver { rule, matches, reason, by, until }).filter(|waiver| dated && !waiver.matches.is_empty()))
-}
-
-fn temperature(text: &str) -> Result<(Celsius, Celsius), QuantityFault> {
-    let (least, greatest) = parse_range(text, Unit::Celsius)?;
-    if -273.15 <= least { Ok((Celsius(least), Celsius(greatest))) } else { Err(below(text, "-273.15 degC")) }
-}
-
-fn resistance(text: &str) -> Result<Ohms, QuantityFault> {
-    magnitude(text, Unit::Ohm).map(Ohms)
-}
-
-fn capacitance(text: &str) -> Result<Farads, QuantityFault> {
-    magnitude(text, Unit::Farad).map(Farads)
-}
-
-fn band(text: &str) -> Result<(Hertz, Hertz), QuantityFault> {
-    let (least, greatest) = parse_range(text, Unit::Hertz)?;
-    let help = "write both ends: `0 Hz .. 200 Hz`";
-    match () {
-        () if 0.0 <= least && least < greatest => Ok((Hertz(least), Hertz(greatest))),
-        () if 0.0 <= least => {
-            Err(QuantityFault::new(format!("expected two ends of a band, found {}", quote(text))).help(help))
-        }
-        () => Err(below(text, "0 Hz")),
-    }
-}
-
-fn travel(text: &str) -> Result<(f64, f64), QuantityFault> {
-    let (least, greatest) = parse_range(text, Unit::One)?;
-    if 0.0 <= least && greatest <= 1.0 {
-        return Ok((least, greatest));
-    }
-    let message = format!("expected a travel within `0 % .. 100 %`, found {}", quote(text));
-    Err(QuantityFault::new(message))
-}
-
-/// A relative tolerance: at least nothing, less than all.
-fn deviation(text: &str) -> Result<f64, QuantityFault> {
-    let text = text.trim();
-    let value = parse_share(text.strip_prefix("+/-").or(text.strip_prefix('\u{b1}')).unwrap_or(text))?;
-    if 0.0 <= value && value < 1.0 {
-        return Ok(value);
-    }
-    Err(QuantityFault::new(format!("expected a tolerance from 0 to below 100 %, found {}", quote(text))))
-}
-
-fn magnitude(text: &str, unit: Unit) -> Result<f64, QuantityFault> {
-    let value = parse(text, unit)?;
-    if 0.0 <= value { Ok(value) } else { Err(below(text, "0")) }
-}
-
-fn below(text: &str, least: &str) -> QuantityFault {
-    QuantityFault::new(format!("expected at least {least}, found {}", quote(text)))
-}
-
-/// A day as `YYYY-MM-DD`, kept as text.
-fn date(text: &str) -> Result<String, QuantityFault> {
-    let fault = || {
-        QuantityFault::new(format!("expected a day such as `2027-06-30`, found {}", quote(text)))
-            .help("write year, month and day as `YYYY-MM-DD`")
-    };
-    let form = text.len() == 10
-        && text.bytes().enumerate().all(|(at, byte)| match at {
-            4 | 7 => byte == b'-',
-            _ => byte.is_ascii_digit(),
-        });
-    if !form {
-        return Err(fault());
-    }
-    let number = |from: usize, to: usize| text[from..to].parse::<u32>().unwrap_or(0);
-    let (year, month, day) = (number(0, 4), number(5, 7), number(8, 10));
-    let leap = year % 4 == 0 && (year % 100 != 0 || year % 400 == 0);
-    let days = match month {
-        2 if leap => 29,
-        2 => 28,
-        4 | 6 | 9 | 11 => 30,
-        1 | 3 | 5 | 7 | 8 | 10 | 12 => 31,
-        _ => 0,
-    };
-    if 1 <= day && day <= days { Ok(text.to_string()) } else { Err(fault()) }
 }
 
 #[cfg(test)]

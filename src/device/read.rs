@@ -7,6 +7,7 @@ use crate::quantity::{
 };
 use crate::source::{FileId, Sources, nearest, quote};
 use crate::yaml::{self, Fields, Kind, Node, Reader, choice};
+use std::collections::BTreeSet;
 
 mod assumed;
 
@@ -19,11 +20,9 @@ type Read<T> = Result<T, Diagnostic>;
 /// and a profile that lacks its name, technology or source is left out.
 pub fn read_profiles(sources: &Sources, file: FileId) -> (Vec<Profile>, Vec<Diagnostic>) {
     let mut reader = Reader::default();
-    let mut profiles = Vec::new();
     let read = yaml::read(sources, file)
-        .and_then(|root| root.map_or(Ok(()), |root| devices(&mut reader, &root, &mut profiles)));
-    reader.faults.extend(read.err());
-    (profiles, reader.faults)
+        .and_then(|root| root.map_or(Ok(Vec::new()), |root| devices(&mut reader, &root)));
+    reader.finish(read)
 }
 
 /// Reads the name of a technology.
@@ -35,11 +34,7 @@ pub fn technology(text: &str) -> Result<Technology, QuantityFault> {
     choice(text, "a technology", &words)
 }
 
-/// Reads the name of a pin.
-///
-/// # Errors
-/// The text names none.
-pub fn pin(text: &str) -> Result<Pin, QuantityFault> {
+fn pin(text: &str) -> Result<Pin, QuantityFault> {
     let words = [
         ("non-inverting", Pin::NonInverting),
         ("inverting", Pin::Inverting),
@@ -50,10 +45,12 @@ pub fn pin(text: &str) -> Result<Pin, QuantityFault> {
     choice(text, "a pin", &words)
 }
 
-fn devices(reader: &mut Reader, root: &Node, profiles: &mut Vec<Profile>) -> Read<()> {
+fn devices(reader: &mut Reader, root: &Node) -> Read<Vec<Profile>> {
+    let mut profiles = Vec::new();
+    let mut names = BTreeSet::new();
     for node in reader.items(root, "a file of devices")? {
         let Some(profile) = profile(reader, node)? else { continue };
-        if profiles.iter().any(|other: &Profile| other.name == profile.name) {
+        if !names.insert(profile.name.clone()) {
             let span = profile.span.unwrap_or(node.span);
             let message = format!("the device {} stands here a second time", quote(&profile.name));
             reader.fault("bad-name", span, message, None);
@@ -61,7 +58,7 @@ fn devices(reader: &mut Reader, root: &Node, profiles: &mut Vec<Profile>) -> Rea
         }
         profiles.push(profile);
     }
-    Ok(())
+    Ok(profiles)
 }
 
 fn profile(reader: &mut Reader, node: &Node) -> Read<Option<Profile>> {
@@ -74,7 +71,7 @@ fn profile(reader: &mut Reader, node: &Node) -> Read<Option<Profile>> {
     let aliases = reader.names(&fields, "aliases")?.into_iter().map(|alias| alias.text).collect();
     let technology = reader.value(&fields, "technology", technology)?;
     let sections = reader.value(&fields, "sections", sections)?.unwrap_or(1);
-    let pins = pins(reader, &fields)?;
+    let pins = read_pins(reader, &fields)?.unwrap_or_default();
     let source = reader.text(&fields, "source")?;
     let notes = reader.values(&fields, "notes", |text| Ok(text.to_string()))?;
     let entries = parameters(reader, &fields)?;
@@ -97,17 +94,25 @@ fn sections(text: &str) -> Result<u32, QuantityFault> {
     count.ok_or_else(|| QuantityFault::new(format!("expected 1 to 8 sections, found {}", quote(text))))
 }
 
-fn pins(reader: &mut Reader, fields: &Fields<'_>) -> Read<Vec<Pin>> {
+/// Reads the key `pins`: the order of a call's pins. `None` where it is left out or at fault.
+///
+/// # Errors
+/// The value is a mapping, or an entry isn't a scalar.
+pub fn read_pins(reader: &mut Reader, fields: &Fields<'_>) -> Result<Option<Vec<Pin>>, Diagnostic> {
+    let Some(node) = fields.get("pins") else { return Ok(None) };
+    let before = reader.count();
     let pins = reader.values(fields, "pins", pin)?;
-    let Some(node) = fields.get("pins") else { return Ok(pins) };
+    if before < reader.count() {
+        return Ok(None);
+    }
     let twice = pins.iter().enumerate().any(|(at, pin)| pins[..at].contains(pin));
     let signals = [Pin::NonInverting, Pin::Inverting, Pin::Output].iter().all(|pin| pins.contains(pin));
     if signals && !twice {
-        return Ok(pins);
+        return Ok(Some(pins));
     }
     let message = if twice { "a pin is named twice" } else { "both inputs and the output must be named" };
     reader.fault("bad-value", node.span, message, None);
-    Ok(Vec::new())
+    Ok(None)
 }
 
 /// All entries, in the order of [`Key::ALL`].
@@ -195,7 +200,7 @@ fn value(text: &str, key: Key) -> Result<f64, QuantityFault> {
         Key::OpenLoopGain => parse_gain(text)?,
         _ => parse(text, key.unit())?,
     };
-    let signed = matches!(key, Key::InputBelowPositive | Key::InputAboveNegative | Key::Supply);
+    let signed = matches!(key, Key::InputBelowPositive | Key::InputAboveNegative);
     // Resistances and gains are divided by.
     let zero = !matches!(
         key,

@@ -20,18 +20,17 @@ pub fn read_pack(
     known: &[(&str, Option<Unit>)],
 ) -> (Vec<Rule>, Vec<Diagnostic>) {
     let mut reader = Reader::default();
-    let mut rules = Vec::new();
     let read = yaml::read(sources, file)
-        .and_then(|root| root.map_or(Ok(()), |root| pack(&mut reader, &root, known, &mut rules)));
-    reader.faults.extend(read.err());
-    (rules, reader.faults)
+        .and_then(|root| root.map_or(Ok(Vec::new()), |root| pack(&mut reader, &root, known)));
+    reader.finish(read)
 }
 
-fn pack(reader: &mut Reader, root: &Node, known: &[(&str, Option<Unit>)], rules: &mut Vec<Rule>) -> Read<()> {
+fn pack(reader: &mut Reader, root: &Node, known: &[(&str, Option<Unit>)]) -> Read<Vec<Rule>> {
+    let mut rules = Vec::new();
     for node in reader.items(root, "a rule pack")? {
         rules.extend(rule(reader, node, known)?);
     }
-    Ok(())
+    Ok(rules)
 }
 
 fn rule(reader: &mut Reader, node: &Node, known: &[(&str, Option<Unit>)]) -> Read<Option<Rule>> {

@@ -1,5 +1,6 @@
 //! What the YAML crate objects to, in words that help someone who writes a budget.
 
+use super::load::DEEPEST;
 use crate::diagnostic::{Diagnostic, Severity};
 use crate::source::{FileId, Span, quote};
 use serde_yaml::granit_parser::{ErrorKind, ScanError};
@@ -10,7 +11,8 @@ const MARKS: [char; 6] = ['*', '&', '!', '%', '@', '`'];
 /// A text that isn't YAML.
 pub(super) fn syntax(error: &ScanError, text: &str, file: FileId) -> Diagnostic {
     let at = floor(text, error.marker().byte_offset().unwrap_or(0));
-    if let Some(start) = mark(text, at) {
+    let directive = *error.kind() == ErrorKind::DirectiveDisallowed;
+    if let Some(start) = mark(text, at).filter(|_| !directive) {
         return marked_word(text, file, start);
     }
     let span = Span { file, start: at as u32, end: at as u32 };
@@ -85,6 +87,9 @@ fn describe(kind: &ErrorKind) -> (String, Option<&'static str>) {
         | ErrorKind::ExpectedFlowMappingSeparator => {
             ("expected `,` or `}` in this mapping".to_string(), None)
         }
+        ErrorKind::InvalidColonPlacement => {
+            ("a colon can't stand here".to_string(), Some("a bracket or quote before it may be left open"))
+        }
         ErrorKind::UnclosedFlowCollection { open } => (format!("the bracket `{open}` isn't closed"), None),
         ErrorKind::MismatchedFlowCollectionEnd { open, close } => {
             (format!("the bracket `{open}` is closed by `{close}`"), None)
@@ -95,9 +100,7 @@ fn describe(kind: &ErrorKind) -> (String, Option<&'static str>) {
             ("unknown escape behind `\\`".to_string(), Some("in single quotes a backslash stands for itself"))
         }
         ErrorKind::DirectiveDisallowed => ("YAML directives aren't read here".to_string(), None),
-        ErrorKind::RecursionLimitExceeded => {
-            ("the lists and mappings are nested too deeply".to_string(), None)
-        }
+        ErrorKind::RecursionLimitExceeded => (format!("expected at most {DEEPEST} levels of nesting"), None),
         ErrorKind::UnexpectedCharacter { character } => (
             format!("found {} where a value should begin", quote(&character.to_string())),
             Some("put it in quotes"),

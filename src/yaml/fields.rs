@@ -11,7 +11,7 @@ use crate::source::{Span, nearest, quote};
 #[derive(Debug, Default)]
 pub struct Reader {
     /// Faults of value so far, in the order of reading.
-    pub faults: Vec<Diagnostic>,
+    faults: Vec<Diagnostic>,
 }
 
 /// A mapping with a fixed set of keys.
@@ -36,6 +36,16 @@ impl<'a> Fields<'a> {
 }
 
 impl Reader {
+    /// Ends the reading: what was read, or nothing after a fault of shape, and all faults in the order of the text.
+    pub fn finish<T: Default>(mut self, read: Result<T, Diagnostic>) -> (T, Vec<Diagnostic>) {
+        let read = read.unwrap_or_else(|shape| {
+            self.faults.push(shape);
+            T::default()
+        });
+        self.faults.sort_by_key(|fault| fault.labels.first().map(|label| label.span));
+        (read, self.faults)
+    }
+
     /// A mapping with known keys; unknown ones are faults with the nearest known key.
     ///
     /// # Errors
@@ -181,6 +191,11 @@ impl Reader {
         }
     }
 
+    /// How many faults of value there are so far.
+    pub fn count(&self) -> usize {
+        self.faults.len()
+    }
+
     /// Keeps a fault of value.
     pub fn fault(
         &mut self,
@@ -269,8 +284,7 @@ fn wrong(node: &Node, expected: &str) -> Diagnostic {
         node.span,
         format!("expected {expected}, found {found}"),
     );
-    match node.kind {
-        Kind::List(_) | Kind::Map(_) => fault.help("text that begins with `[` or `{` wants quotes"),
-        _ => fault,
-    }
+    // Of the collections only those in brackets have a mark, and may have been meant as text.
+    let bracket = matches!(node.kind, Kind::List(_) | Kind::Map(_)) && node.span.start < node.span.end;
+    if bracket { fault.help("text that begins with `[` or `{` wants quotes") } else { fault }
 }

@@ -10,8 +10,8 @@ use std::collections::BTreeMap;
 const LONGEST: usize = 8 << 20;
 /// Most nodes of one text.
 const MOST_NODES: usize = 200_000;
-/// Deepest nesting of lists and mappings.
-const DEEPEST: usize = 32;
+/// Deepest nesting in brackets, and as deep again by indentation; bounds the recursion below.
+pub(super) const DEEPEST: usize = 32;
 
 /// Reads a text as one YAML document; `None` where it holds nothing.
 ///
@@ -22,16 +22,15 @@ pub fn read(sources: &Sources, file: FileId) -> Result<Option<Node>, Diagnostic>
     if LONGEST < text.len() {
         let span = Span { file, start: 0, end: 0 };
         let message = format!("expected at most {} MB of YAML, found {} bytes", LONGEST >> 20, text.len());
-        return Err(Diagnostic::at("yaml-size", Severity::Error, span, message));
+        return Err(too_large(span, message));
     }
     let mut options = Options::default();
     options.emit_anchor_events = true;
     options.emit_unresolved_aliases = true;
     options.disallow_directives = true;
     options.set_emit_comments(false);
-    // One more than is allowed, so that the bound of this module speaks first.
-    options.flow_nesting_limit = DEEPEST + 1;
-    options.block_nesting_limit = DEEPEST + 1;
+    options.flow_nesting_limit = DEEPEST;
+    options.block_nesting_limit = DEEPEST;
     let parser = Parser::new_from_str_with_options(text, options);
     Loader { parser, text, file, nodes: 0 }.document()
 }
@@ -53,7 +52,7 @@ impl<'a> Loader<'a> {
                     return Err(shape(span, "expected one YAML document, found a second one"));
                 }
                 Event::StreamStart | Event::StreamEnd | Event::DocumentStart(..) | Event::DocumentEnd => {}
-                event => root = Some(self.node(event, &marked, 0)?),
+                event => root = Some(self.node(event, &marked)?),
             }
         }
         Ok(root.filter(|node| node.kind != Kind::Empty))
@@ -71,14 +70,11 @@ impl<'a> Loader<'a> {
         self.next()?.ok_or_else(|| shape(inside, "the text ends inside a list or mapping"))
     }
 
-    fn node(&mut self, event: Event<'a>, marked: &Marked, depth: usize) -> Result<Node, Diagnostic> {
+    fn node(&mut self, event: Event<'a>, marked: &Marked) -> Result<Node, Diagnostic> {
         let span = self.span(marked);
         self.nodes += 1;
         if MOST_NODES < self.nodes {
-            return Err(too_much(span, format!("expected at most {MOST_NODES} values in one file")));
-        }
-        if DEEPEST < depth {
-            return Err(too_much(span, format!("expected at most {DEEPEST} levels of nesting")));
+            return Err(too_large(span, format!("expected at most {MOST_NODES} values in one file")));
         }
         if let (Some(start), Event::Scalar(..) | Event::SequenceStart(..) | Event::MappingStart(..)) =
             (marked.tag_start, &event)
@@ -87,8 +83,8 @@ impl<'a> Loader<'a> {
         }
         match event {
             Event::Scalar(text, style, ..) => self.scalar(text.into_owned(), style, span),
-            Event::SequenceStart(..) => self.list(span, depth),
-            Event::MappingStart(..) => self.map(span, depth),
+            Event::SequenceStart(..) => self.list(span),
+            Event::MappingStart(..) => self.map(span),
             Event::Anchor(..) | Event::Alias(..) | Event::UnresolvedAlias(..) => {
                 Err(fault::marked_word(self.text, self.file, span.start as usize))
             }
@@ -110,17 +106,17 @@ impl<'a> Loader<'a> {
         Ok(Node { kind: Kind::Scalar(text), span })
     }
 
-    fn list(&mut self, span: Span, depth: usize) -> Result<Node, Diagnostic> {
+    fn list(&mut self, span: Span) -> Result<Node, Diagnostic> {
         let mut items = Vec::new();
         loop {
             match self.expect(span)? {
                 (Event::SequenceEnd, _) => return Ok(Node { kind: Kind::List(items), span }),
-                (event, marked) => items.push(self.node(event, &marked, depth + 1)?),
+                (event, marked) => items.push(self.node(event, &marked)?),
             }
         }
     }
 
-    fn map(&mut self, span: Span, depth: usize) -> Result<Node, Diagnostic> {
+    fn map(&mut self, span: Span) -> Result<Node, Diagnostic> {
         let mut entries: Vec<(Name, Node)> = Vec::new();
         let mut places = BTreeMap::new();
         loop {
@@ -128,7 +124,7 @@ impl<'a> Loader<'a> {
             if let Event::MappingEnd = event {
                 return Ok(Node { kind: Kind::Map(entries), span });
             }
-            let key = self.node(event, &marked, depth + 1)?;
+            let key = self.node(event, &marked)?;
             let Kind::Scalar(text) = key.kind else {
                 let found = format!("expected a name as key, found {}", key.noun());
                 return Err(shape(key.span, found).help("text that begins with `{` or `[` wants quotes"));
@@ -137,7 +133,7 @@ impl<'a> Loader<'a> {
                 return Err(twice(&text, first, key.span));
             }
             let (event, marked) = self.expect(span)?;
-            let value = self.node(event, &marked, depth + 1)?;
+            let value = self.node(event, &marked)?;
             entries.push((Name { text, span: key.span }, value));
         }
     }
@@ -155,7 +151,7 @@ fn shape(span: Span, message: impl Into<String>) -> Diagnostic {
     Diagnostic::at("yaml-shape", Severity::Error, span, message)
 }
 
-fn too_much(span: Span, message: String) -> Diagnostic {
+fn too_large(span: Span, message: String) -> Diagnostic {
     Diagnostic::at("yaml-size", Severity::Error, span, message)
 }
 

@@ -14,13 +14,7 @@ pub fn read_assumed(sources: &Sources, file: FileId) -> (Assumed, Vec<Diagnostic
     let mut reader = Reader::default();
     let read = yaml::read(sources, file)
         .and_then(|root| root.map_or(Ok(Assumed::default()), |root| assumed(&mut reader, &root)));
-    match read {
-        Ok(assumed) => (assumed, reader.faults),
-        Err(shape) => {
-            reader.faults.push(shape);
-            (Assumed::default(), reader.faults)
-        }
-    }
+    reader.finish(read)
 }
 
 fn assumed(reader: &mut Reader, root: &Node) -> Read<Assumed> {
@@ -110,7 +104,7 @@ fn default(reader: &mut Reader, node: &Node, assumed: &mut Assumed) -> Read<()> 
 
 fn share(text: &str) -> Result<f64, QuantityFault> {
     let value = parse_share(text)?;
-    let fits = 0.0 <= value && value < 1.0;
+    let fits = (0.0..1.0).contains(&value);
     let fault = || QuantityFault::new(format!("expected 0 % to below 100 %, found {}", quote(text)));
     fits.then_some(value).ok_or_else(fault)
 }
