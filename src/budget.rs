@@ -4,14 +4,10 @@ use crate::device::{Pin, Technology};
 use crate::quantity::{Celsius, Farads, Hertz, Ohms, Unit};
 use crate::source::Span;
 
-/// A word of the budget with its place.
-#[derive(Debug, Clone, PartialEq, Eq)]
-pub struct Name {
-    /// The text.
-    pub text: String,
-    /// Where it stands.
-    pub span: Span,
-}
+pub use crate::yaml::Name;
+pub use read::read;
+
+mod read;
 
 /// A nominal value with the range it stays in; both in the unit of its field.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -154,6 +150,8 @@ pub struct StatedLimit {
     pub value: f64,
     /// Its unit; [`Unit::One`] for a ratio or percentage.
     pub unit: Unit,
+    /// Whether the value is a share of the declared output span: `1 % of span`.
+    pub of_span: bool,
     /// Where the value stands.
     pub span: Span,
 }

@@ -1,8 +1,10 @@
 //! Profiles: a device's datasheet figures, each with unit, conditions and source.
 
 mod catalogue;
+mod read;
 mod spread;
 
+pub use read::{read_assumed, read_pins, read_profiles, technology};
 pub use spread::{Situation, Spread, bounds, spread};
 
 use crate::quantity::{Amps, Celsius, Farads, Ohms, Unit, Volts};

@@ -6,6 +6,7 @@
 pub mod source;
 pub mod quantity;
 pub mod diagnostic;
+pub mod yaml;
 pub mod netlist;
 pub mod device;
 pub mod budget;

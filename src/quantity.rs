@@ -1,4 +1,15 @@
 //! Units: newtypes for what travels between modules, and quantities as people write and read them.
+//!
+//! Decides what a text means as a number and how a number reads; knows nothing of files.
+
+mod parse;
+mod range;
+mod show;
+mod unit;
+
+pub use parse::{parse, parse_any, parse_gain, parse_one_of, parse_share};
+pub use range::{parse_range, parse_range_of, parse_toleranced};
+pub use show::{percent, show};
 
 /// Makes a newtype of `f64` that carries its unit.
 macro_rules! quantity {
@@ -73,8 +84,25 @@ pub enum Unit {
     AmperePerRootHertz,
 }
 
-/// Prints a value with its unit, four significant digits and an SI prefix: `4.7 kohm`, `-12.5 mV`.
-/// Ratios print as a percentage where that reads better, below one; see the tests.
-pub fn show(value: f64, _unit: Unit) -> String {
-    value.to_string()
+/// Why a text isn't the quantity that was expected; also used for any other word that doesn't fit.
+#[derive(Debug, Clone, PartialEq, Eq, thiserror::Error)]
+#[error("{message}")]
+pub struct QuantityFault {
+    /// What was expected and what was found.
+    pub message: String,
+    /// What to write instead, where that is known.
+    pub help: Option<String>,
+}
+
+impl QuantityFault {
+    /// A fault without advice.
+    pub fn new(message: impl Into<String>) -> Self {
+        QuantityFault { message: message.into(), help: None }
+    }
+
+    /// The same fault with advice.
+    pub fn help(mut self, help: impl Into<String>) -> Self {
+        self.help = Some(help.into());
+        self
+    }
 }

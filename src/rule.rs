@@ -4,6 +4,10 @@ use crate::device::Technology;
 use crate::diagnostic::Severity;
 use crate::source::Span;
 
+mod read;
+
+pub use read::read_pack;
+
 /// One entry of a rule pack: a figure or fact with its limit, severity, scope, reason and source.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Rule {

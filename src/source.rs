@@ -2,6 +2,10 @@
 //!
 //! Reads no files; whoever loads a file adds its text here once and refers to it by [`Span`].
 
+mod words;
+
+pub use words::{nearest, quote};
+
 /// One text of the run.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Hash, PartialOrd, Ord)]
 pub struct FileId(pub u32);
@@ -101,32 +105,4 @@ pub fn matches(pattern: &str, name: &str) -> bool {
         }
     }
     pattern[p..].iter().all(|byte| *byte == b'*')
-}
-
-/// The name among `known` that differs least from `name`, where the difference is small enough to be a
-/// slip; of equals the first.
-pub fn nearest<'k>(name: &str, known: impl Iterator<Item = &'k str>) -> Option<&'k str> {
-    let most = name.chars().count() / 3 + 1;
-    known
-        .filter(|other| other.len().abs_diff(name.len()) <= most)
-        .map(|other| (distance(name, other), other))
-        .filter(|(distance, _)| *distance <= most)
-        .min_by_key(|(distance, _)| *distance)
-        .map(|(_, other)| other)
-}
-
-/// Insertions, deletions and exchanges that turn one name into another, case aside (Levenshtein, 1966).
-fn distance(a: &str, b: &str) -> usize {
-    let (a, b): (Vec<char>, Vec<char>) =
-        (a.to_lowercase().chars().collect(), b.to_lowercase().chars().collect());
-    let mut row: Vec<usize> = (0..=b.len()).collect();
-    for (i, x) in a.iter().enumerate() {
-        let mut diagonal = std::mem::replace(&mut row[0], i + 1);
-        for (j, y) in b.iter().enumerate() {
-            let exchange = diagonal + usize::from(x != y);
-            diagonal = row[j + 1];
-            row[j + 1] = exchange.min(diagonal + 1).min(row[j] + 1);
-        }
-    }
-    row[b.len()]
 }
