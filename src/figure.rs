@@ -1,13 +1,15 @@
 //! Figures: what is computed of each stage. One file a figure, with its doc, formula, source and ledger.
 
 mod bias_error;
+mod deviation;
+mod disturbance;
 mod doc;
-mod errors;
 mod feedback_loading;
 mod gain_error;
 mod gain_spread;
 mod headroom;
 mod input_headroom;
+mod ledger;
 mod linear;
 mod loop_gain;
 mod offset_error;
@@ -16,12 +18,12 @@ mod range;
 mod stage;
 mod study;
 
+pub use deviation::deviations;
 pub use doc::{Doc, Kind};
+pub use ledger::{Item, Line};
 pub use range::{Extreme, PinVoltages};
 pub use stage::{Input, Main, Requirement, Review, Stage, Transfer};
 
-use crate::circuit::ElementId;
-use crate::device::Rank;
 
 /// Which way a figure turns bad.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -32,21 +34,6 @@ pub enum Bad {
     Low,
     /// When it rises.
     High,
-}
-
-/// One line of a ledger.
-#[derive(Debug, Clone, PartialEq)]
-pub struct Line {
-    /// What the line is about.
-    pub item: String,
-    /// Its signed effect, in the figure's unit.
-    pub effect: f64,
-    /// How far its data can be trusted.
-    pub rank: Rank,
-    /// The element that it points at.
-    pub element: Option<ElementId>,
-    /// Whether it is the base that the other lines start from.
-    pub base: bool,
 }
 
 /// One figure of one stage.
@@ -87,8 +74,8 @@ impl Figure {
 
     /// Share of each line's magnitude in the sum of all; the base has none.
     pub fn shares(&self) -> Vec<Option<f64>> {
-        let total: f64 = self.ledger.iter().filter(|line| !line.base).map(|line| line.effect.abs()).sum();
-        let share = |line: &Line| (!line.base && 0.0 < total).then(|| line.effect.abs() / total);
+        let total: f64 = self.ledger.iter().filter(|line| line.item != Item::Nominal).map(|line| line.effect.abs()).sum();
+        let share = |line: &Line| (line.item != Item::Nominal && 0.0 < total).then(|| line.effect.abs() / total);
         self.ledger.iter().map(share).collect()
     }
 }

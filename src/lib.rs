@@ -13,4 +13,5 @@ pub mod budget;
 pub mod circuit;
 pub mod block;
 pub mod solve;
+pub mod figure;
 pub mod rule;

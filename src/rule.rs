@@ -4,8 +4,10 @@ use crate::device::Technology;
 use crate::diagnostic::Severity;
 use crate::source::Span;
 
+mod finding;
 mod read;
 
+pub use finding::{Finding, Waived};
 pub use read::read_pack;
 
 /// One entry of a rule pack: a figure or fact with its limit, severity, scope, reason and source.
@@ -53,4 +55,29 @@ pub struct RuleScope {
     pub device: Vec<String>,
     /// Stage ids, `*` allowed.
     pub designator: Vec<String>,
+}
+
+/// The verdict over one figure.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
+pub enum Status {
+    /// Inside its limit, or without one.
+    Within,
+    /// It couldn't be computed or judged.
+    Unknown,
+    /// A warning.
+    Marginal,
+    /// An error.
+    Broken,
+}
+
+impl Status {
+    /// The word in reports.
+    pub fn word(self) -> &'static str {
+        match self {
+            Status::Within => "within",
+            Status::Unknown => "unknown",
+            Status::Marginal => "marginal",
+            Status::Broken => "broken",
+        }
+    }
 }

@@ -2,7 +2,7 @@
 //! transfers from the board's primary quantities for every output.
 
 use crate::block::{AmpId, Layout, Port, Role};
-use crate::circuit::{Circuit, NetId};
+use crate::circuit::{Circuit, NetId, Tie};
 use crate::device::{Catalogue, Rank};
 use crate::solve::device::{Device, Supply};
 use crate::solve::model::{Fault, Model};
@@ -42,6 +42,8 @@ pub struct Primary {
     pub kind: PrimaryKind,
     /// Its name in reports.
     pub name: String,
+    /// Its net, where it is one.
+    pub net: Option<NetId>,
     /// Its value at rest, volt or ampere.
     pub rest: f64,
     /// Its range, where known; a rail's is its nominal value alone.
@@ -77,18 +79,21 @@ pub struct Board<'a> {
     /// Row of each amplifier's output.
     pub rows: Vec<Row>,
     fixed: FxHashMap<NetId, Row>,
+    levels: Vec<u8>,
+    supply_nets: Vec<(Option<NetId>, Option<NetId>)>,
     /// Index of the first current among the primaries.
     pub first_current: usize,
 }
 
 impl<'a> Board<'a> {
-    /// Composes a board; `supplies` holds the supplies of each op amp.
+    /// Composes a board; `nets` holds the positive and negative supply net of each op amp.
     pub fn new(
         circuit: &'a Circuit,
         layout: &'a Layout,
         catalogue: &'a Catalogue,
-        supplies: Vec<Option<Supply>>,
+        nets: Vec<(Option<NetId>, Option<NetId>)>,
     ) -> Board<'a> {
+        let supplies = nets.iter().map(|nets| supply(circuit, catalogue.assumed.rail, *nets));
         let devices: Vec<Device> = circuit
             .op_amps
             .iter()
@@ -112,8 +117,11 @@ impl<'a> Board<'a> {
             place,
             rows: vec![Row::new(); layout.amps.len()],
             fixed: FxHashMap::default(),
+            levels: vec![0; layout.amps.len()],
+            supply_nets: nets,
             first_current: 0,
         };
+        board.rank_outputs();
         board.load();
         board.enumerate();
         board.sweep();
@@ -125,6 +133,41 @@ impl<'a> Board<'a> {
         match port.role {
             Role::Output(amp) if !self.fixed.contains_key(&port.net) => &self.rows[amp.0 as usize],
             _ => self.fixed.get(&port.net).map_or(&[], Vec::as_slice),
+        }
+    }
+
+    /// Nets of an op amp's positive and negative supply.
+    pub fn supply_nets(&self, op_amp: u32) -> (Option<NetId>, Option<NetId>) {
+        self.supply_nets[op_amp as usize]
+    }
+
+    /// The primary that a held net is alone.
+    pub fn primary_of(&self, net: NetId) -> Option<u32> {
+        match self.fixed.get(&net).map(Vec::as_slice) {
+            Some([(primary, entry)]) if *entry == 1.0 => Some(*primary),
+            _ => None,
+        }
+    }
+
+    /// How much of a signal a held net is: 2 for a signal, 1 for a source that only has a DC value, 0 for
+    /// rails, references and what is derived from them alone. Of a stage's ports those of the highest
+    /// level above 0 are its signals.
+    pub fn level(&self, net: NetId) -> u8 {
+        match self.layout.role(net) {
+            Role::Signal => 2,
+            Role::Output(amp) => self.levels[amp.0 as usize],
+            Role::Reference if self.circuit.tie(net) == Some(Tie::Source) => 1,
+            Role::Reference | Role::Rail | Role::Ground | Role::Free => 0,
+        }
+    }
+
+    fn rank_outputs(&mut self) {
+        for block in &self.layout.blocks {
+            let ports = block.ports.iter().filter(|port| port.input).map(|port| self.level(port.net));
+            let level = if block.currents.is_empty() { ports.max().unwrap_or(0) } else { 2 };
+            for amp in &block.members {
+                self.levels[amp.0 as usize] = level;
+            }
         }
     }
 
@@ -226,6 +269,7 @@ impl<'a> Board<'a> {
         self.primaries.push(Primary {
             kind: PrimaryKind::Constant,
             name: String::new(),
+            net: None,
             rest: 1.0,
             range: Some((1.0, 1.0)),
             deviation: 0.0,
@@ -272,7 +316,7 @@ impl<'a> Board<'a> {
             _ => PrimaryKind::Signal,
         };
         let range = potential.and_then(|potential| potential.range);
-        let mut primary = signal(kind, name, range);
+        let mut primary = Primary { net: Some(net), ..signal(kind, name, range) };
         let Some(potential) = potential else { return primary };
         primary.rest = potential.nominal;
         primary.rank = potential.rank;
@@ -347,12 +391,35 @@ fn signal(kind: PrimaryKind, name: String, range: Option<(f64, f64)>) -> Primary
     Primary {
         kind,
         name,
+        net: None,
         rest: range.map_or(0.0, |(low, high)| (low + high) / 2.0),
         range,
         deviation: 0.0,
         rank: Rank::Guaranteed,
         deviation_rank: Rank::Guaranteed,
     }
+}
+
+/// The supplies on two nets, where the voltages of both are known and in order.
+fn supply(
+    circuit: &Circuit,
+    assumed: f64,
+    (positive, negative): (Option<NetId>, Option<NetId>),
+) -> Option<Supply> {
+    let (positive, negative) = (positive?, negative?);
+    let volts = |net: NetId| match circuit.net(net).ground {
+        true => Some((0.0, Rank::Guaranteed)),
+        false => circuit.potential(net).map(|potential| (potential.nominal, potential.rank)),
+    };
+    let (above, below) = (volts(positive)?, volts(negative)?);
+    let (up, down) = (rail_deviation(circuit, positive, assumed), rail_deviation(circuit, negative, assumed));
+    (below.0 < above.0).then(|| Supply {
+        positive: above.0,
+        negative: below.0,
+        deviation: (up.0, down.0),
+        rank: above.1.max(below.1),
+        deviation_rank: up.1.max(down.1),
+    })
 }
 
 /// What a rail may deviate: as declared, else the assumed share of its voltage.

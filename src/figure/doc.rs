@@ -1,0 +1,84 @@
+//! The list of figures; what each one is stands beside its code.
+
+use crate::figure::{
+    Bad, bias_error, feedback_loading, gain_error, gain_spread, input_headroom, loop_gain, offset_error,
+    output_headroom,
+};
+use crate::quantity::Unit;
+
+/// What a figure is, in the words that every report and `explain` use.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Doc {
+    /// Its name in files.
+    pub slug: &'static str,
+    /// Its name in sentences.
+    pub title: &'static str,
+    /// Its unit.
+    pub unit: Unit,
+    /// Which way it turns bad.
+    pub bad: Bad,
+    /// What happens in the circuit.
+    pub physics: &'static str,
+    /// How it is computed.
+    pub formula: &'static str,
+    /// Where the formula comes from.
+    pub source: &'static str,
+    /// What makes it worse.
+    pub worse: &'static str,
+    /// Which quantity must change and which way.
+    pub cure: &'static str,
+}
+
+/// A figure.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
+pub enum Kind {
+    /// See [`gain_error::DOC`].
+    GainError,
+    /// See [`loop_gain::DOC`].
+    LoopGain,
+    /// See [`feedback_loading::DOC`].
+    FeedbackLoading,
+    /// See [`bias_error::DOC`].
+    BiasError,
+    /// See [`offset_error::DOC`].
+    OffsetError,
+    /// See [`output_headroom::DOC`].
+    OutputHeadroom,
+    /// See [`input_headroom::DOC`].
+    InputHeadroom,
+    /// See [`gain_spread::DOC`].
+    GainSpread,
+}
+
+impl Kind {
+    /// Every figure, in the order of reports.
+    pub const ALL: &'static [Kind] = &[
+        Kind::GainError,
+        Kind::LoopGain,
+        Kind::FeedbackLoading,
+        Kind::BiasError,
+        Kind::OffsetError,
+        Kind::OutputHeadroom,
+        Kind::InputHeadroom,
+        Kind::GainSpread,
+    ];
+
+    /// What it is.
+    pub fn doc(self) -> &'static Doc {
+        match self {
+            Kind::GainError => &gain_error::DOC,
+            Kind::LoopGain => &loop_gain::DOC,
+            Kind::FeedbackLoading => &feedback_loading::DOC,
+            Kind::BiasError => &bias_error::DOC,
+            Kind::OffsetError => &offset_error::DOC,
+            Kind::OutputHeadroom => &output_headroom::DOC,
+            Kind::InputHeadroom => &input_headroom::DOC,
+            Kind::GainSpread => &gain_spread::DOC,
+        }
+    }
+
+    /// The figure of a slug.
+    pub fn by_slug(slug: &str) -> Option<Kind> {
+        Kind::ALL.iter().copied().find(|kind| kind.doc().slug == slug)
+    }
+}

@@ -1,0 +1,119 @@
+//! What bias error, offset error and both headrooms share: a reading of the block with disturbances.
+
+use crate::circuit::NetId;
+use crate::device::Key;
+use crate::figure::disturbance::Extra;
+use crate::figure::linear::{Linear, axes};
+use crate::figure::stage::Stage;
+use crate::figure::study::{Axis, Quantity, Study, study};
+use crate::figure::{Bad, Figure, Item, Kind};
+use crate::solve::{Excitation, Node};
+use smallvec::smallvec;
+
+/// One end of the supplies as a limit: its voltage, the net that carries it, what keeps a pin away from it.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Bound {
+    /// Whether it is the positive end.
+    pub high: bool,
+    /// Nominal voltage of the rail.
+    pub rail: f64,
+    /// Its net.
+    pub net: Option<NetId>,
+}
+
+/// A distance studied: to which end, and its parts.
+pub(super) struct Distance {
+    pub axes: Vec<Axis>,
+    pub items: Vec<Item>,
+    pub found: Study,
+}
+
+impl<'b> Stage<'b> {
+    /// The figure of a magnitude that disturbances alone make at the output.
+    pub(super) fn magnitude(&self, kind: Kind, extras: Vec<Extra>) -> Figure {
+        let linear = self.reading(self.output(), 1.0, 0.0, Excitation::none(), &extras);
+        let (axes, items) = with_axes(axes(self.model(), true), &extras);
+        let Some(found) = study(&linear, &axes, Bad::High) else {
+            return Figure::unknown(kind, "its equations have no solution at the worst corner");
+        };
+        // The nominal is the sum of typical magnitudes in the nominal circuit.
+        let point: Vec<f64> = axes.iter().map(|axis| axis.nominal).collect();
+        let mut gradient = vec![0.0; axes.len()];
+        linear.at(&point, &mut gradient);
+        let own = self.model().parameters.len();
+        let typical = gradient[own..].iter().zip(&extras).map(|(slope, extra)| slope.abs() * extra.typical).sum();
+        Figure { nominal: Some(typical), ..self.figure_of(kind, &axes, &found, &items, true) }
+    }
+
+    /// A reading of one node with disturbances.
+    pub(super) fn reading(
+        &self,
+        node: Node,
+        sign: f64,
+        constant: f64,
+        excitation: Excitation<f64>,
+        extras: &[Extra],
+    ) -> Linear<'b> {
+        Linear {
+            model: self.model(),
+            reading: smallvec![(node, 1.0)],
+            current_from: None,
+            constant,
+            sign,
+            excitation,
+            extras: extras.iter().map(|extra| extra.effect.clone()).collect(),
+        }
+    }
+
+    /// Both ends of the op amp's supplies.
+    pub(super) fn bounds(&self) -> Option<[Bound; 2]> {
+        let supply = self.device().supply?;
+        let (positive, negative) = self.board.supply_nets(self.op_amp);
+        Some([
+            Bound { high: false, rail: supply.negative, net: negative },
+            Bound { high: true, rail: supply.positive, net: positive },
+        ])
+    }
+
+    /// The distance of a node from an end of the supplies, in a given state of the ports. `key` is the
+    /// distance that must be kept, at an output current of `current`.
+    ///
+    /// # Errors
+    /// What is missing, in words.
+    pub(super) fn distance(
+        &self,
+        node: Node,
+        bound: Bound,
+        (key, current): (Key, f64),
+        excitation: Excitation<f64>,
+        mut extras: Vec<Extra>,
+    ) -> Result<Distance, String> {
+        let kept = self.spread(key, current).ok_or_else(|| self.missing(key))?;
+        let sign = if bound.high { -1.0 } else { 1.0 };
+        extras.extend(self.rail_extras(bound.net.map(|net| (net, -sign))));
+        let mut kept_axis = Extra::symmetric(Default::default(), Item::OpAmp(self.op_amp, key.name()), 0.0, 0.0, kept.rank);
+        kept_axis.effect.direct = -1.0;
+        kept_axis.axis = Axis { base: kept.nominal, nominal: kept.nominal, low: kept.low, high: kept.high, rank: kept.rank };
+        extras.push(kept_axis);
+        let linear = self.reading(node, sign, -sign * bound.rail, excitation, &extras);
+        let (axes, items) = with_axes(axes(self.model(), false), &extras);
+        let found = study(&linear, &axes, Bad::Low)
+            .ok_or_else(|| "its equations have no solution at the worst corner".to_owned())?;
+        Ok(Distance { axes, items, found })
+    }
+
+    /// The figure of the least of several distances.
+    pub(super) fn least(&self, kind: Kind, distances: &[Distance]) -> Figure {
+        let least = distances.iter().min_by(|a, b| a.found.worst.total_cmp(&b.found.worst));
+        let Some(least) = least else { return Figure::unknown(kind, "there is no distance to take") };
+        let nominal = distances.iter().map(|distance| distance.found.nominal).fold(f64::INFINITY, f64::min);
+        let figure = self.figure_of(kind, &least.axes, &least.found, &least.items, false);
+        Figure { nominal: Some(nominal), ..figure }
+    }
+}
+
+/// Appends the axes of extra values; returns them with the names of the extra ones.
+pub(super) fn with_axes(mut axes: Vec<Axis>, extras: &[Extra]) -> (Vec<Axis>, Vec<Item>) {
+    axes.extend(extras.iter().map(|extra| extra.axis));
+    (axes, extras.iter().map(|extra| extra.item).collect())
+}

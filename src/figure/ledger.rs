@@ -1,0 +1,135 @@
+//! Ledgers: what a study found, item by item.
+
+use crate::circuit::{Circuit, ElementId, NetId};
+use crate::device::Rank;
+use crate::figure::stage::Stage;
+use crate::figure::study::{Axis, Study};
+use crate::figure::{Bad, Figure, Kind};
+use crate::solve::What;
+
+/// What a line of a ledger is about.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Item {
+    /// The nominal value that the other lines start from.
+    Nominal,
+    /// What the nominal values alone miss of an intended gain.
+    Values,
+    /// What no single item explains.
+    HigherOrder,
+    /// A parameter of an op amp, by its index in the circuit.
+    OpAmp(u32, &'static str),
+    /// A resistor.
+    Resistor(ElementId),
+    /// Resistors of a matched group that move together; the first of them.
+    Group(ElementId),
+    /// A rail.
+    Rail(NetId),
+    /// Everything that moves the output of an earlier stage.
+    Upstream(NetId),
+}
+
+impl Item {
+    /// The item in words.
+    pub fn label(self, circuit: &Circuit) -> String {
+        let element = |id: ElementId| circuit.element(id).name.as_str();
+        match self {
+            Item::Nominal => "nominal".to_owned(),
+            Item::Values => "nominal values".to_owned(),
+            Item::HigherOrder => "higher order".to_owned(),
+            Item::OpAmp(at, what) => format!("{} {what}", circuit.op_amps[at as usize].name),
+            Item::Resistor(id) => element(id).to_owned(),
+            Item::Group(id) => format!("{} and its matched group", element(id)),
+            Item::Rail(net) => format!("rail {}", circuit.net(net).name),
+            Item::Upstream(net) => format!("error of {}", circuit.net(net).name),
+        }
+    }
+
+    /// The element whose line it points at.
+    pub fn element(self, circuit: &Circuit) -> Option<ElementId> {
+        match self {
+            Item::OpAmp(at, _) => Some(circuit.op_amps[at as usize].element),
+            Item::Resistor(id) | Item::Group(id) => Some(id),
+            Item::Nominal | Item::Values | Item::HigherOrder | Item::Rail(_) | Item::Upstream(_) => None,
+        }
+    }
+}
+
+/// One line of a ledger.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Line {
+    /// What it is about.
+    pub item: Item,
+    /// Its signed effect, in the figure's unit.
+    pub effect: f64,
+    /// How far its data can be trusted.
+    pub rank: Rank,
+}
+
+impl Stage<'_> {
+    /// What each of a model's parameters is called.
+    fn item(&self, at: usize) -> Item {
+        let model = self.model();
+        let op_amp = |amp: usize, what| match model.op_amps[amp] {
+            Some(op_amp) => Item::OpAmp(op_amp, what),
+            None => Item::HigherOrder,
+        };
+        match &model.parameters[at].what {
+            What::InverseGain(amp) => op_amp(*amp, "open-loop gain"),
+            What::Differential(amp) => op_amp(*amp, "input resistance"),
+            What::Common(amp) => op_amp(*amp, "common-mode resistance"),
+            What::Output(amp) => op_amp(*amp, "output resistance"),
+            What::Resistors(branches) if branches.len() == 1 => Item::Resistor(model.elements[branches[0] as usize]),
+            What::Resistors(branches) => Item::Group(model.elements[branches[0] as usize]),
+        }
+    }
+
+    /// A figure from a study; `extras` names the axes behind the model's parameters.
+    ///
+    /// The base is nought for errors: then what the base point itself has is a line of its own. For all
+    /// else the nominal value is the base and the first line.
+    pub(super) fn figure_of(
+        &self,
+        kind: Kind,
+        axes: &[Axis],
+        found: &Study,
+        extras: &[Item],
+        error: bool,
+    ) -> Figure {
+        let parameters = self.model().parameters.len();
+        let mut lines: Vec<Line> = found
+            .effects
+            .iter()
+            .enumerate()
+            .filter(|(_, effect)| **effect != 0.0)
+            .map(|(at, effect)| {
+                let item = if at < parameters { self.item(at) } else { extras[at - parameters] };
+                Line { item, effect: *effect, rank: axes[at].rank }
+            })
+            .collect();
+        lines.sort_by(|a, b| b.effect.abs().total_cmp(&a.effect.abs()));
+        let squares: f64 = lines.iter().map(|line| line.effect * line.effect).sum();
+        let rest = found.worst - found.base - lines.iter().map(|line| line.effect).sum::<f64>();
+        if rest.abs() > 1e-12 * found.worst.abs() {
+            lines.push(Line { item: Item::HigherOrder, effect: rest, rank: Rank::Guaranteed });
+        }
+        let first = if error { Item::Values } else { Item::Nominal };
+        if !error || 1e-14 < found.base.abs() {
+            lines.insert(0, Line { item: first, effect: found.base, rank: Rank::Guaranteed });
+        }
+        let rss = match (error, kind.doc().bad) {
+            (true, _) => (squares + found.base * found.base).sqrt(),
+            (false, Bad::Low) => found.nominal - squares.sqrt(),
+            (false, _) => found.nominal + squares.sqrt(),
+        };
+        Figure {
+            kind,
+            nominal: Some(found.nominal),
+            worst: Some(found.worst),
+            rss: Some(rss),
+            reason: None,
+            sign: None,
+            bound: false,
+            ledger: lines,
+        }
+    }
+}
