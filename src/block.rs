@@ -3,11 +3,13 @@
 
 mod cut;
 mod ends;
+mod name;
 mod roles;
 mod verdict;
 
 pub use cut::lay_out;
-pub use verdict::outside_loop;
+pub use name::{Topology, name};
+pub use verdict::{open_loop, outside_loop, rectifier};
 
 use crate::circuit::{ElementId, NetId};
 

@@ -25,6 +25,8 @@ pub use range::{Extreme, PinVoltages};
 pub use stage::{Input, Main, Requirement, Review, Stage, Transfer};
 
 
+use crate::device::Rank;
+
 /// Which way a figure turns bad.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub enum Bad {
@@ -53,6 +55,8 @@ pub struct Figure {
     pub sign: Option<f64>,
     /// Whether it was computed for the guaranteed swing because no range is declared.
     pub bound: bool,
+    /// How far that can be trusted which is no line of the ledger: rails, ranges.
+    pub rests_on: Rank,
     /// What makes it up.
     pub ledger: Vec<Line>,
 }
@@ -68,6 +72,7 @@ impl Figure {
             reason: Some(reason.into()),
             sign: None,
             bound: false,
+            rests_on: Rank::Guaranteed,
             ledger: Vec::new(),
         }
     }

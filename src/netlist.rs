@@ -7,6 +7,27 @@ use crate::diagnostic::Diagnostic;
 use crate::source::{FileId, Sources, Span};
 use smallvec::SmallVec;
 
+mod controlled;
+mod directive;
+mod element;
+mod expression;
+mod fault;
+mod finish;
+pub mod limit;
+mod line;
+mod name;
+mod number;
+mod passive;
+mod phrase;
+mod reader;
+mod sheet;
+mod title;
+mod wave;
+
+pub use expression::evaluate;
+pub use name::{name_hash, name_order, same_name};
+pub use number::{Number, number, percentage};
+
 /// A word of the text: a name, a value or an expression, by its place.
 pub type Word = Span;
 
@@ -168,19 +189,18 @@ pub enum Include {
     Refused(String),
 }
 
-/// Reads a netlist. `load` gets the path as written and adds the text to the sources.
-pub fn read(
-    _sources: &mut Sources,
-    _file: FileId,
-    _load: &mut dyn FnMut(&mut Sources, &str, FileId) -> Include,
-) -> (Netlist, Vec<Diagnostic>) {
-    (Netlist::default(), Vec::new())
-}
-
-/// Evaluates an expression of numbers, names, `+ - * / ^ **`, parentheses and the usual functions.
+/// Reads a netlist. `load` gets the path as written and the file whose line asks for it, and adds the text to the
+/// sources; a text that it has added before it may answer with the same id.
 ///
-/// # Errors
-/// A sentence that says what is wrong: an unknown name, a missing operand, too deep a nesting.
-pub fn evaluate(_text: &str, _lookup: &dyn Fn(&str) -> Option<f64>) -> Result<f64, String> {
-    Err(String::new())
+/// Every fault is a diagnostic and reading goes on; the limits in [`limit`] bound the work.
+pub fn read(
+    sources: &mut Sources,
+    file: FileId,
+    load: &mut dyn FnMut(&mut Sources, &str, FileId) -> Include,
+) -> (Netlist, Vec<Diagnostic>) {
+    let mut reader = reader::Reader::default();
+    reader.run(sources, file, load);
+    let reader::Reader { mut netlist, mut faults, .. } = reader;
+    finish::finish(&mut netlist, sources, &mut faults);
+    (netlist, faults.list)
 }

@@ -5,6 +5,66 @@
 mod words;
 
 pub use words::{nearest, quote};
+use encoding_rs::{Encoding, UTF_8, UTF_16BE, UTF_16LE, WINDOWS_1252};
+
+/// Why bytes are no text.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, thiserror::Error)]
+pub enum DecodeFault {
+    /// A byte that no text holds.
+    #[error("expected text, found the byte 0x{byte:02X} at offset {offset}, as binary files have it")]
+    Binary {
+        /// The byte.
+        byte: u8,
+        /// How many bytes of the decoded text stand before it.
+        offset: usize,
+    },
+}
+
+/// Decodes a text file: UTF-8, UTF-16 with or without a byte order mark, else Windows-1252.
+///
+/// The mark goes, so do Ctrl-Z signs at the end; line ends of bare carriage returns become line feeds.
+///
+/// # Errors
+/// [`DecodeFault::Binary`] where control characters other than blanks are left.
+pub fn decode(bytes: &[u8]) -> Result<String, DecodeFault> {
+    let (encoding, bytes) = match Encoding::for_bom(bytes) {
+        Some((encoding, length)) => (encoding, &bytes[length..]),
+        None => (guess(bytes), bytes),
+    };
+    let (text, _) = encoding.decode_without_bom_handling(bytes);
+    let mut text = text.into_owned();
+    let kept = text.trim_end_matches(['\u{1a}', '\0', '\r', '\n']).len();
+    if text[kept..].contains('\u{1a}') {
+        let end = text[kept..].find('\u{1a}').map_or(text.len(), |at| kept + at);
+        text.truncate(end);
+    }
+    let control =
+        |byte: &u8| *byte < 0x20 && !matches!(byte, b'\t' | b'\n' | b'\r' | 0x0b | 0x0c) || *byte == 0x7f;
+    if let Some(offset) = text.bytes().position(|byte| control(&byte)) {
+        return Err(DecodeFault::Binary { byte: text.as_bytes()[offset], offset });
+    }
+    if text.contains('\r') && !text.contains('\n') {
+        text = text.replace('\r', "\n");
+    }
+    Ok(text)
+}
+
+/// The encoding of a text without a mark: every second byte of UTF-16 is mostly zero in a netlist.
+fn guess(bytes: &[u8]) -> &'static Encoding {
+    let sample = &bytes[..bytes.len().min(4_096)];
+    let zeros = |first: usize| sample.iter().skip(first).step_by(2).filter(|byte| **byte == 0).count();
+    let (even, odd) = (zeros(0), zeros(1));
+    let many = sample.len() / 4;
+    if many < odd && even * 10 < odd {
+        UTF_16LE
+    } else if many < even && odd * 10 < even {
+        UTF_16BE
+    } else if std::str::from_utf8(bytes).is_ok() {
+        UTF_8
+    } else {
+        WINDOWS_1252
+    }
+}
 
 /// One text of the run.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Hash, PartialOrd, Ord)]

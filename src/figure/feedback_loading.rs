@@ -82,7 +82,8 @@ fn share(stage: &Stage, from: Option<Main>) -> Result<Figure, String> {
         .ok_or_else(|| "its equations have no solution at the worst corner".to_owned())?;
     let items = [Item::OpAmp(stage.op_amp, "rated output current")];
     let figure = stage.figure_of(Kind::FeedbackLoading, &axes, &found, &items, false);
-    Ok(Figure { bound, ..figure })
+    let rests_on = if bound { Rank::Assumed } else { Rank::Guaranteed };
+    Ok(Figure { bound, rests_on, ..figure })
 }
 
 /// The main port driven so far that the output takes its whole guaranteed swing, the others at 0.

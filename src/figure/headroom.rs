@@ -1,7 +1,7 @@
 //! What bias error, offset error and both headrooms share: a reading of the block with disturbances.
 
 use crate::circuit::NetId;
-use crate::device::Key;
+use crate::device::{Key, Rank};
 use crate::figure::disturbance::Extra;
 use crate::figure::linear::{Linear, axes};
 use crate::figure::stage::Stage;
@@ -103,12 +103,13 @@ impl<'b> Stage<'b> {
     }
 
     /// The figure of the least of several distances.
-    pub(super) fn least(&self, kind: Kind, distances: &[Distance]) -> Figure {
+    pub(super) fn least(&self, kind: Kind, distances: &[Distance], ranges: Rank) -> Figure {
         let least = distances.iter().min_by(|a, b| a.found.worst.total_cmp(&b.found.worst));
         let Some(least) = least else { return Figure::unknown(kind, "there is no distance to take") };
         let nominal = distances.iter().map(|distance| distance.found.nominal).fold(f64::INFINITY, f64::min);
         let figure = self.figure_of(kind, &least.axes, &least.found, &least.items, false);
-        Figure { nominal: Some(nominal), ..figure }
+        let rests_on = self.device().supply.map_or(ranges, |supply| ranges.max(supply.rank));
+        Figure { nominal: Some(nominal), rests_on, ..figure }
     }
 }
 

@@ -1,6 +1,6 @@
 //! Input headroom: how far both inputs stay inside the common-mode range.
 
-use crate::device::Key;
+use crate::device::{Key, Rank};
 use crate::figure::disturbance::Extra;
 use crate::figure::linear::Linear;
 use crate::figure::range::{Drive, extremes};
@@ -37,17 +37,20 @@ fn distances(stage: &Stage, drive: &Drive) -> Result<Figure, String> {
     own.extend(stage.upstream());
     let (plus, minus) = stage.inputs();
     let mut distances = Vec::with_capacity(4);
+    let mut ranges = Rank::Guaranteed;
     for node in [plus, minus] {
         let bare = stage.reading(node, 1.0, 0.0, Excitation::none(), &[]);
         let row = stage.row_of(&bare).ok_or_else(|| "its equations have no solution".to_owned())?;
-        let ends = extremes(stage.board, &row).0.map_err(|name| format!("the range of {name} is not declared"))?;
+        let (ends, rank) = extremes(stage.board, &row);
+        let ends = ends.map_err(|name| format!("the range of {name} is not declared"))?;
+        ranges = ranges.max(rank);
         let counted = if COUNTS < moved(stage, node, &own) { own.clone() } else { Vec::new() };
         for (bound, end) in bounds.into_iter().zip(&ends) {
             let key = if bound.high { Key::InputBelowPositive } else { Key::InputAboveNegative };
             distances.push(stage.distance(node, bound, (key, 0.0), stage.excited(end), counted.clone())?);
         }
     }
-    Ok(stage.least(Kind::InputHeadroom, &distances))
+    Ok(stage.least(Kind::InputHeadroom, &distances, ranges))
 }
 
 /// By how much disturbances together move a node, volt.

@@ -129,6 +129,7 @@ impl Stage<'_> {
             reason: None,
             sign: None,
             bound: false,
+            rests_on: Rank::Guaranteed,
             ledger: lines,
         }
     }

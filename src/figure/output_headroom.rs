@@ -41,5 +41,5 @@ fn distances(stage: &Stage, drive: &Drive) -> Result<Figure, String> {
             if bound.high { (Key::SwingBelowPositive, out) } else { (Key::SwingAboveNegative, -out) };
         distances.push(stage.distance(stage.output(), bound, (key, current), excitation, extras.clone())?);
     }
-    Ok(stage.least(Kind::OutputHeadroom, &distances))
+    Ok(stage.least(Kind::OutputHeadroom, &distances, drive.rank))
 }

@@ -3,7 +3,6 @@
 use crate::block::{AmpId, Block, Layout, Role};
 use crate::circuit::{Circuit, NetId, OpAmp};
 use crate::device::{Profile, Rank};
-use crate::figure::linear::other_end;
 use crate::figure::range::Drive;
 use crate::figure::{Figure, Kind, PinVoltages};
 use crate::figure::{
@@ -278,16 +277,6 @@ impl<'b> Stage<'b> {
         of(|from| matches!(from, Main::Port(_))).or_else(|| of(|from| matches!(from, Main::Current(_))))
     }
 
-    /// Branches of the feedback network that start at the output.
-    pub(super) fn feedback(&self) -> impl Iterator<Item = usize> + '_ {
-        let model = self.model();
-        let output = self.output();
-        (0..model.feedback_branches).filter(move |at| {
-            let branch = model.network.branches[*at];
-            other_end(branch.a, branch.b, output).is_some()
-        })
-    }
-
     /// Why a block has no figures, in words.
     pub fn explain(&self, fault: &Fault) -> String {
         explain(self.board.circuit, self.board.layout, fault)
@@ -309,6 +298,9 @@ fn explain(circuit: &Circuit, layout: &Layout, fault: &Fault) -> String {
             format!("no transfer at DC: nothing closes the loop from {}", net(at))
         }
         Fault::NoTwin(_) => "no transfer at DC: no feedback path conducts".to_owned(),
+        Fault::OutsideLoop(at) => format!("its loop closes through {}, which is not modelled", circuit.element(*at).name),
+        Fault::NonLinear(at) => format!("{} makes it non-linear by intent", circuit.element(*at).name),
+        Fault::OpenLoop => "no network closes its loop: a comparator, or feedback is missing".to_owned(),
         Fault::Regenerative => "the DC feedback regenerates: the inputs are exchanged, or it is a switching stage".to_owned(),
     }
 }

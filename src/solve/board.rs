@@ -1,7 +1,7 @@
 //! The board composed of its blocks: what each block draws from those that feed it, and one row of
 //! transfers from the board's primary quantities for every output.
 
-use crate::block::{AmpId, Layout, Port, Role};
+use crate::block::{AmpId, Layout, Port, Role, open_loop, outside_loop, rectifier};
 use crate::circuit::{Circuit, NetId, Tie};
 use crate::device::{Catalogue, Rank};
 use crate::solve::device::{Device, Supply};
@@ -219,9 +219,18 @@ impl<'a> Board<'a> {
 
     /// What makes a block's figures meaningless though its equations stand.
     fn verify(&self, at: usize) -> Option<Fault> {
-        let model = &self.models[at];
+        let (model, block) = (&self.models[at], &self.layout.blocks[at]);
         if model.fault.is_some() {
             return None;
+        }
+        if let Some(element) = outside_loop(self.circuit, self.layout, block) {
+            return Some(Fault::OutsideLoop(element));
+        }
+        if let Some(diode) = rectifier(self.circuit, self.layout, block) {
+            return Some(Fault::NonLinear(diode));
+        }
+        if open_loop(self.circuit, self.layout, block) {
+            return Some(Fault::OpenLoop);
         }
         let twin = model.nominal.twin(|amp| model.op_amps[amp].is_some());
         if let Err(singular) = Solved::new(&model.network, twin) {

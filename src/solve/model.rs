@@ -32,6 +32,12 @@ pub enum Fault {
     NoTwin(Option<NetId>),
     /// The DC loop gain regenerates.
     Regenerative,
+    /// The loop closes through an element that isn't modelled.
+    OutsideLoop(ElementId),
+    /// A diode makes the block non-linear by intent.
+    NonLinear(ElementId),
+    /// No passive leads from the output back to an input.
+    OpenLoop,
 }
 
 /// A block as equations.
