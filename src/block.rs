@@ -93,6 +93,8 @@ pub struct Layout {
     pub amps: Vec<Amp>,
     /// Blocks, those that feed others first.
     pub blocks: Vec<Block>,
+    /// Each amplifier of a block of several alone, the block's other outputs held.
+    pub locals: Vec<(AmpId, Block)>,
     /// Op amps that can't be analysed, with the reason.
     pub skipped: Vec<(u32, String)>,
     /// Nets taken for signals because nothing else could drive their network.
@@ -105,6 +107,12 @@ impl Layout {
     /// An amplifier by its id.
     pub fn amp(&self, id: AmpId) -> &Amp {
         &self.amps[id.0 as usize]
+    }
+
+    /// An amplifier of a block of several as a block of its own; `None` where its block is one of one.
+    pub fn local(&self, amp: AmpId) -> Option<&Block> {
+        let at = self.locals.binary_search_by_key(&amp, |(own, _)| *own).ok()?;
+        Some(&self.locals[at].1)
     }
 
     /// What sets a net.

@@ -11,6 +11,7 @@ mod headroom;
 mod input_headroom;
 mod ledger;
 mod linear;
+mod local;
 mod loop_gain;
 mod offset_error;
 mod output_headroom;
@@ -22,7 +23,7 @@ pub use deviation::deviations;
 pub use doc::{Doc, Kind};
 pub use ledger::{Item, Line};
 pub use range::{Extreme, PinVoltages};
-pub use stage::{Input, Main, Requirement, Review, Stage, Transfer};
+pub use stage::{Input, Main, Requirement, Review, Stage, Transfer, explain};
 
 
 use crate::device::Rank;

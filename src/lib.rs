@@ -15,3 +15,6 @@ pub mod block;
 pub mod solve;
 pub mod figure;
 pub mod rule;
+pub mod report;
+pub mod check;
+pub mod cli;

@@ -1,3 +1,7 @@
-//! Command line.
+//! The program: see the library's `cli`.
 
-fn main() {}
+use std::process::ExitCode;
+
+fn main() -> ExitCode {
+    ExitCode::from(gainsay::cli::run())
+}

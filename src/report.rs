@@ -4,7 +4,7 @@ mod json;
 mod text;
 
 pub use json::json;
-pub use text::{Style, text};
+pub use text::{Style, ledger_text, text};
 
 use crate::device::Rank;
 use crate::figure::Bad;
@@ -152,6 +152,8 @@ pub struct FigureReport {
     pub sign: Option<f64>,
     /// What it must keep.
     pub limit: Option<f64>,
+    /// Whether the budget states that limit.
+    pub stated: bool,
     /// The verdict.
     pub status: Status,
     /// Why something is missing.

@@ -5,8 +5,10 @@ use crate::diagnostic::Severity;
 use crate::source::Span;
 
 mod finding;
+mod judge;
 mod read;
 
+pub use judge::{Judged, Subject, judge, shown};
 pub use finding::{Finding, Waived};
 pub use read::read_pack;
 

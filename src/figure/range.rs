@@ -28,6 +28,8 @@ pub struct PinVoltages {
     pub minus: f64,
     /// Output.
     pub out: f64,
+    /// Non-inverting less inverting input.
+    pub difference: f64,
     /// Output of the twin.
     pub twin_out: f64,
 }
@@ -66,6 +68,7 @@ impl Drive {
                 plus: state.volts(plus),
                 minus: state.volts(minus),
                 out: state.volts(stage.output()),
+                difference: state.volts(plus) - state.volts(minus),
                 twin_out: twin.forward(&excitation).volts(stage.output()),
             }
         });

@@ -174,7 +174,7 @@ impl<'b> Stage<'b> {
         let transfers = self.transfers();
         let main = self.main(&transfers);
         if let Some(fault) = &self.model().fault {
-            let reason = self.explain(fault);
+            let reason = explain(self.board.circuit, self.board.layout, fault);
             let figures = Kind::ALL.iter().map(|kind| Figure::unknown(*kind, reason.clone())).collect();
             return Review { transfers, main, pins: Vec::new(), span: None, figures };
         }
@@ -276,14 +276,10 @@ impl<'b> Stage<'b> {
         };
         of(|from| matches!(from, Main::Port(_))).or_else(|| of(|from| matches!(from, Main::Current(_))))
     }
-
-    /// Why a block has no figures, in words.
-    pub fn explain(&self, fault: &Fault) -> String {
-        explain(self.board.circuit, self.board.layout, fault)
-    }
 }
 
-fn explain(circuit: &Circuit, layout: &Layout, fault: &Fault) -> String {
+/// Why a block has no figures, in words.
+pub fn explain(circuit: &Circuit, layout: &Layout, fault: &Fault) -> String {
     let net = |net: &NetId| circuit.net(*net).name.as_str();
     let op_amp = |at: &u32| &circuit.op_amps[*at as usize];
     match fault {

@@ -1,0 +1,166 @@
+//! The command line: what can be asked, and how answers are printed.
+
+use crate::check::{self, Options};
+use crate::diagnostic::Severity;
+use crate::report::{self, Style};
+use clap::{Parser, Subcommand, ValueEnum};
+use std::io::{IsTerminal, Write};
+use std::path::PathBuf;
+
+/// Checks every op-amp stage of a netlist against its error budget, with real parts, before layout.
+#[derive(Debug, Parser)]
+#[command(name = "gainsay", version, after_help = report::CAUTION_LINE)]
+pub struct Cli {
+    #[command(subcommand)]
+    command: Command,
+}
+
+#[derive(Debug, Subcommand)]
+enum Command {
+    /// Check netlists: every stage, every figure, what breaks its limit and which lines cause it.
+    Check(Check),
+    /// Show one stage in full: transfers, pin voltages, and each figure item by item.
+    Ledger(Ledger),
+}
+
+/// What every command that reads a board takes.
+#[derive(Debug, clap::Args)]
+struct Board {
+    /// Budget of the one netlist; else NAME.budget.yaml beside each netlist is taken.
+    #[arg(long, value_name = "FILE")]
+    budget: Option<PathBuf>,
+    /// Further device profiles: a YAML file or a folder of them. Later ones win.
+    #[arg(long, value_name = "PATH")]
+    devices: Vec<PathBuf>,
+    /// Further rule packs. Later entries win.
+    #[arg(long, value_name = "FILE")]
+    rules: Vec<PathBuf>,
+}
+
+#[derive(Debug, clap::Args)]
+struct Check {
+    /// Netlists, or folders to look for netlists in.
+    #[arg(required = true, value_name = "PATH")]
+    paths: Vec<PathBuf>,
+    #[command(flatten)]
+    board: Board,
+    /// How the report is written.
+    #[arg(long, value_enum, default_value = "text")]
+    format: Format,
+    /// Least severity of a finding that fails the run.
+    #[arg(long, value_enum, default_value = "error")]
+    fail_on: Weight,
+    /// Fail as well where an op amp is skipped or a stated limit can't be judged.
+    #[arg(long)]
+    complete: bool,
+    /// Show every note in full.
+    #[arg(long)]
+    all: bool,
+}
+
+#[derive(Debug, clap::Args)]
+struct Ledger {
+    /// The netlist.
+    #[arg(value_name = "NETLIST")]
+    netlist: PathBuf,
+    /// The stage's id, as the check shows it.
+    #[arg(value_name = "STAGE")]
+    stage: String,
+    #[command(flatten)]
+    board: Board,
+}
+
+#[derive(Debug, Clone, Copy, PartialEq, Eq, ValueEnum)]
+enum Format {
+    /// For people.
+    Text,
+    /// For programs: schema gainsay-report/1.
+    Json,
+}
+
+#[derive(Debug, Clone, Copy, PartialEq, Eq, ValueEnum)]
+enum Weight {
+    /// Errors alone.
+    Error,
+    /// Warnings too.
+    Warning,
+    /// Notes too.
+    Note,
+}
+
+/// Runs a command; the exit status.
+pub fn run() -> u8 {
+    match Cli::parse().command {
+        Command::Check(check) => run_check(check),
+        Command::Ledger(ledger) => run_ledger(&ledger),
+    }
+}
+
+fn run_check(asked: Check) -> u8 {
+    let fail_on = match asked.fail_on {
+        Weight::Error => Severity::Error,
+        Weight::Warning => Severity::Warning,
+        Weight::Note => Severity::Note,
+    };
+    let options = Options {
+        paths: asked.paths,
+        budget: asked.board.budget,
+        devices: asked.board.devices,
+        rules: asked.board.rules,
+        fail_on: Some(fail_on),
+        complete: asked.complete,
+    };
+    let outcome = check::run(&options);
+    complain(&outcome.unusable);
+    let text = match asked.format {
+        Format::Json => report::json(&outcome.report, &outcome.sources),
+        Format::Text => report::text(&outcome.report, &outcome.sources, style(asked.all)),
+    };
+    if print(&text) { outcome.status() } else { 2 }
+}
+
+fn run_ledger(asked: &Ledger) -> u8 {
+    let options = Options {
+        paths: vec![asked.netlist.clone()],
+        budget: asked.board.budget.clone(),
+        devices: asked.board.devices.clone(),
+        rules: asked.board.rules.clone(),
+        ..Options::default()
+    };
+    let outcome = check::run(&options);
+    complain(&outcome.unusable);
+    let stages = || outcome.report.boards.iter().flat_map(|board| &board.stages);
+    match stages().find(|stage| stage.id.eq_ignore_ascii_case(&asked.stage)) {
+        Some(stage) => {
+            if print(&report::ledger_text(stage, style(true))) && outcome.unusable.is_empty() { 0 } else { 2 }
+        }
+        None => {
+            let known: Vec<&str> = stages().map(|stage| stage.id.as_str()).collect();
+            complain(&[format!("no stage {}; the stages are: {}", crate::source::quote(&asked.stage), known.join(", "))]);
+            2
+        }
+    }
+}
+
+/// Says on the error stream what can't be read or used.
+fn complain(lines: &[String]) {
+    for line in lines {
+        // An error stream that is closed has nobody to tell.
+        let _ = writeln!(std::io::stderr(), "gainsay: {line}");
+    }
+}
+
+/// Writes a report; a reader that closes the pipe has seen enough.
+fn print(text: &str) -> bool {
+    match std::io::stdout().write_all(text.as_bytes()) {
+        Ok(()) => true,
+        Err(fault) => fault.kind() == std::io::ErrorKind::BrokenPipe,
+    }
+}
+
+fn style(all: bool) -> Style {
+    const USUAL: usize = 100;
+    let colour = std::io::stdout().is_terminal() && std::env::var_os("NO_COLOR").is_none_or(|value| value.is_empty());
+    let width = std::env::var("COLUMNS").ok().and_then(|columns| columns.parse().ok()).unwrap_or(USUAL);
+    Style { colour, width: width.clamp(40, 200), all }
+}

@@ -1,0 +1,172 @@
+//! One stage in full: its transfers, its voltages, and what makes up each figure.
+
+use super::Style;
+use super::number::{fine, optional, value};
+use super::paper::Paper;
+use super::table::Table;
+use crate::device::Rank;
+use crate::figure::Bad;
+use crate::quantity::{Unit, percent, show};
+use crate::report::{FigureReport, LedgerLine, PinReport, StageReport, TransferReport};
+
+/// Columns of a bar that stands for a share of one.
+const BAR: usize = 20;
+
+/// Blocks of one to seven eighths of a column.
+const EIGHTHS: [&str; 8] = ["", "▏", "▎", "▍", "▌", "▋", "▊", "▉"];
+
+/// How near a sum must come to the worst case to be called it, as a share of it.
+const AGREES: f64 = 1e-6;
+
+/// One stage with every figure and its ledger, ending in a newline.
+pub fn ledger_text(stage: &StageReport, style: Style) -> String {
+    let mut paper = Paper::new(style);
+    write_header(&mut paper, stage);
+    write_transfers(&mut paper, "transfers", &stage.transfers);
+    if let Some(local) = &stage.local {
+        write_transfers(&mut paper, "transfers with the block's other outputs held", local);
+    }
+    write_pins(&mut paper, &stage.pins);
+    for figure in &stage.figures {
+        write_figure(&mut paper, figure);
+    }
+    paper.done()
+}
+
+fn write_header(paper: &mut Paper, stage: &StageReport) {
+    let StageReport { id, device, topology, output, .. } = stage;
+    let group = stage.group.as_ref().map_or(String::new(), |group| format!(", group {group}"));
+    paper.paragraph("", "  ", &format!("{id}: {topology}{group}, device {device}, output {output}"));
+}
+
+fn write_transfers(paper: &mut Paper, title: &str, transfers: &[TransferReport]) {
+    if transfers.is_empty() {
+        return;
+    }
+    let mut table = Table::new(["input", "unit", ">at", ">ideal", ">actual", ">error"]);
+    for transfer in transfers {
+        let none = || "none".to_owned();
+        table.row([
+            transfer.input.clone(),
+            transfer.unit.to_owned(),
+            show(transfer.frequency, Unit::Hertz),
+            fine(transfer.ideal, transfer.unit),
+            transfer.actual.map_or_else(none, |actual| fine(actual, transfer.unit)),
+            transfer.error.map_or_else(none, percent),
+        ]);
+    }
+    paper.blank();
+    paper.line(title);
+    table.write(paper, 2);
+}
+
+fn write_pins(paper: &mut Paper, pins: &[PinReport]) {
+    if pins.is_empty() {
+        return;
+    }
+    let mut table = Table::new(["output", ">in+", ">in-", ">in+ less in-", ">out", ">ideal out"]);
+    for pin in pins {
+        table.row([
+            pin.at.to_owned(),
+            fine(pin.plus, "V"),
+            fine(pin.minus, "V"),
+            show(pin.difference, Unit::Volt),
+            fine(pin.out, "V"),
+            fine(pin.twin_out, "V"),
+        ]);
+    }
+    paper.blank();
+    paper.line("voltages where the ranges drive the output lowest and highest");
+    table.write(paper, 2);
+}
+
+fn write_figure(paper: &mut Paper, figure: &FigureReport) {
+    paper.blank();
+    let first = format!("{}: ", paper.accent(figure.slug));
+    paper.paragraph(&first, "  ", &format!("{}{}", figure.status.word(), limit(figure)));
+    let number = |number| optional(number, figure.unit, figure.bad);
+    let mut numbers = format!(
+        "nominal {}, worst {}, RSS {}, {} data",
+        number(figure.nominal),
+        number(figure.worst),
+        number(figure.rss),
+        rank(figure.data),
+    );
+    if let Some(sign) = figure.sign {
+        numbers += &format!(", return ratio {} at DC", if sign < 0.0 { "negative" } else { "positive" });
+    }
+    paper.paragraph("  ", "  ", &numbers);
+    if let Some(reason) = &figure.reason {
+        paper.paragraph("  reason: ", "          ", reason);
+    }
+    write_ledger(paper, figure);
+}
+
+/// `, limit at least 250 mV`: a limit has no sign of its own.
+fn limit(figure: &FigureReport) -> String {
+    let Some(limit) = figure.limit else { return ", no limit".to_owned() };
+    let limit = value(limit, figure.unit, figure.bad);
+    match figure.bad {
+        Bad::Either => format!(", limit +/- {limit}"),
+        Bad::Low => format!(", limit at least {limit}"),
+        Bad::High => format!(", limit at most {limit}"),
+    }
+}
+
+/// The lines, the largest share first, and what they add up to.
+fn write_ledger(paper: &mut Paper, figure: &FigureReport) {
+    if figure.ledger.is_empty() {
+        return;
+    }
+    let mut lines: Vec<&LedgerLine> = figure.ledger.iter().collect();
+    let size = |line: &LedgerLine| line.share.map_or(f64::NEG_INFINITY, |share| -share);
+    lines.sort_by(|left, right| size(left).total_cmp(&size(right)));
+    let mut table = Table::new([">effect", ">share", "", "of", ""]);
+    for line in lines {
+        table.row([
+            value(line.effect, figure.unit, figure.bad),
+            line.share.map_or_else(String::new, percent_of_all),
+            line.share.map_or_else(String::new, bar),
+            line.item.clone(),
+            if line.against { "against the worst".to_owned() } else { String::new() },
+        ]);
+    }
+    if let Some((total, words)) = total(figure) {
+        let total = value(total, figure.unit, figure.bad);
+        table.row([total, String::new(), String::new(), words.to_owned(), String::new()]);
+    }
+    table.write(paper, 2);
+}
+
+/// What the lines add up to, where that is the worst case: plainly, or as squares.
+fn total(figure: &FigureReport) -> Option<(f64, &'static str)> {
+    let worst = figure.worst?;
+    let sum: f64 = figure.ledger.iter().map(|line| line.effect).sum();
+    let root = figure.ledger.iter().map(|line| line.effect * line.effect).sum::<f64>().sqrt();
+    let agrees = |total: f64| (total - worst).abs() <= AGREES * worst.abs();
+    match () {
+        _ if agrees(sum) => Some((sum, "the sum, which is the worst case")),
+        _ if agrees(root) => Some((root, "the root of the squares' sum, which is the worst case")),
+        _ => None,
+    }
+}
+
+/// A share with one decimal, so that a column of them reads at a glance.
+fn percent_of_all(share: f64) -> String {
+    if share.is_finite() { format!("{:.1} %", 100.0 * share) } else { percent(share) }
+}
+
+/// A bar as long as a share.
+fn bar(share: f64) -> String {
+    let eighths = (share.clamp(0.0, 1.0) * (BAR * 8) as f64).round() as usize;
+    "█".repeat(eighths / 8) + EIGHTHS[eighths % 8]
+}
+
+/// The word for how far data can be trusted.
+fn rank(rank: Rank) -> &'static str {
+    match rank {
+        Rank::Guaranteed => "guaranteed",
+        Rank::Typical => "typical",
+        Rank::Assumed => "assumed",
+    }
+}
