@@ -20,13 +20,16 @@ mod number;
 mod passive;
 mod phrase;
 mod reader;
+mod remark;
+mod settle;
 mod sheet;
 mod title;
 mod wave;
 
 pub use expression::evaluate;
 pub use name::{name_hash, name_order, same_name};
-pub use number::{Number, number, percentage};
+pub use number::{Number, number};
+pub use remark::percentage;
 
 /// A word of the text: a name, a value or an expression, by its place.
 pub type Word = Span;
@@ -119,7 +122,8 @@ pub enum Value {
 /// What an element is.
 #[derive(Debug)]
 pub enum Kind {
-    /// R: resistance in ohm; `None` where the line has no value.
+    /// R: resistance in ohm; `None` where the line has no value. A third node is that of a potentiometer, whose
+    /// wiper is the second.
     Resistor(Passive),
     /// C: capacitance in farad.
     Capacitor(Passive),
@@ -155,9 +159,10 @@ pub enum Kind {
 /// Value, tolerance and rating of R, C or L.
 #[derive(Debug, Clone, Copy, Default)]
 pub struct Passive {
-    /// Its value; `None` where the line has none.
+    /// Its value; `None` where the line has none. The factor of its `.model` and parts in parallel (`m=`) are in it
+    /// already where it is a literal.
     pub value: Option<Value>,
-    /// Relative tolerance where the netlist states it (0.01 for 1 %).
+    /// Relative tolerance where the netlist states it, its `.model` included (0.01 for 1 %).
     pub tolerance: Option<f64>,
     /// Rated power (R, watt) or voltage (C, volt) where the netlist states it.
     pub rating: Option<f64>,

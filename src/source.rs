@@ -33,10 +33,8 @@ pub fn decode(bytes: &[u8]) -> Result<String, DecodeFault> {
     };
     let (text, _) = encoding.decode_without_bom_handling(bytes);
     let mut text = text.into_owned();
-    let kept = text.trim_end_matches(['\u{1a}', '\0', '\r', '\n']).len();
-    if text[kept..].contains('\u{1a}') {
-        let end = text[kept..].find('\u{1a}').map_or(text.len(), |at| kept + at);
-        text.truncate(end);
+    if let Some(before) = text.trim_end_matches(['\r', '\n']).strip_suffix('\u{1a}') {
+        text.truncate(before.trim_end_matches('\u{1a}').len());
     }
     let control =
         |byte: &u8| *byte < 0x20 && !matches!(byte, b'\t' | b'\n' | b'\r' | 0x0b | 0x0c) || *byte == 0x7f;

@@ -97,6 +97,10 @@ fn operands(phrase: &Phrase) -> Operands {
             found.expression = Some(*token);
             break;
         }
+        // The word says no more than the letter does.
+        if 2 <= found.words.len() && same_name(text, "vcvs") {
+            continue;
+        }
         if 2 <= found.words.len() && is_form(text) {
             found.form = Some(at);
             break;
@@ -157,6 +161,7 @@ fn control_nets(phrase: &Phrase, form: usize, count: usize) -> Vec<Word> {
 
 /// Adds the nets inside `V(a)` and `V(a,b)` of a behavioural form.
 fn sensed(phrase: &Phrase, nodes: &mut Nodes) {
+    let mut calls = 0;
     for token in phrase.tokens.iter().skip(3) {
         let text = phrase.of(token);
         for (at, _) in text.match_indices(['v', 'V']) {
@@ -164,6 +169,10 @@ fn sensed(phrase: &Phrase, nodes: &mut Nodes) {
             let Some(list) = text[at + 1..].trim_start().strip_prefix('(') else { continue };
             if inside {
                 continue;
+            }
+            calls += 1;
+            if 4 * limit::SENSED_NETS < calls {
+                return;
             }
             for net in list[..closing(list)].split(',').map(str::trim).filter(|net| !net.is_empty()) {
                 let known =

@@ -25,13 +25,12 @@ pub(super) enum Request {
 }
 
 /// Statements without meaning for the circuit's static and small-signal limits.
-const PASSED: [&str; 81] = [
+const PASSED: [&str; 76] = [
     ".ac",
     ".aliases",
     ".alter",
     ".backanno",
     ".biaschk",
-    ".check",
     ".connect",
     ".csparam",
     ".data",
@@ -40,7 +39,6 @@ const PASSED: [&str; 81] = [
     ".dellib",
     ".distribution",
     ".disto",
-    ".dout",
     ".end",
     ".endaliases",
     ".endc",
@@ -49,7 +47,6 @@ const PASSED: [&str; 81] = [
     ".endmachine",
     ".env",
     ".extern",
-    ".ferret",
     ".fft",
     ".four",
     ".func",
@@ -72,7 +69,6 @@ const PASSED: [&str; 81] = [
     ".mc",
     ".meas",
     ".measure",
-    ".monte",
     ".net",
     ".nodeset",
     ".noise",
@@ -84,7 +80,6 @@ const PASSED: [&str; 81] = [
     ".print",
     ".probe",
     ".protect",
-    ".psinit",
     ".pss",
     ".pz",
     ".save",
@@ -171,12 +166,7 @@ pub(super) fn read(reader: &mut Reader, phrase: &Phrase) -> Request {
 
 /// `.subckt name ports [params: key=value ...]`.
 fn open(reader: &mut Reader, phrase: &Phrase) {
-    let words = phrase.positional();
-    let words = match words.split_first() {
-        Some((name, ports)) => Some((phrase.word(name), ports)),
-        None => None,
-    };
-    let Some((name, ports)) = words else {
+    let Some((name, ports)) = phrase.positional().split_first() else {
         reader.faults.error(
             "missing-name",
             phrase.span,
@@ -193,7 +183,7 @@ fn open(reader: &mut Reader, phrase: &Phrase) {
         .map(|port| phrase.place(phrase.of(port).trim_start_matches('(')))
         .map(|port| trimmed(phrase, port));
     let ports = ports.collect();
-    reader.open(name, ports, phrase.assignments(phrase.first_key()), phrase);
+    reader.open(phrase.word(name), ports, phrase.assignments(phrase.first_key()), phrase);
 }
 
 /// A port without a parenthesis that closes the list around it.
@@ -236,23 +226,19 @@ fn wide_assignments(phrase: &Phrase) -> Vec<Assignment> {
     let equals: Vec<usize> = (2..tokens.len()).filter(|at| tokens[*at].kind == TokenKind::Equals).collect();
     let mut list = Vec::with_capacity(equals.len());
     for (place, at) in equals.iter().enumerate() {
-        let end = equals.get(place + 1).map_or(tokens.len(), |next| next - 1);
-        let Some(first) = tokens.get(at + 1) else { break };
-        if tokens[at - 1].kind != TokenKind::Bare || end <= at + 1 {
+        let (name, Some(first)) = (&tokens[at - 1], tokens.get(at + 1)) else { break };
+        if name.kind != TokenKind::Bare || first.kind == TokenKind::Equals {
             continue;
         }
-        let last = if first.kind == TokenKind::Bare { tokens[end - 1] } else { *first };
-        let name = phrase.of(&tokens[at - 1]);
-        let name = name.rsplit(',').next().unwrap_or(name);
-        let mut value = Span { end: last.end, ..phrase.word(first) };
-        // In `a=1,b=2` the word `1,b` holds the next name.
-        if last.kind == TokenKind::Bare
-            && equals.len() != place + 1
-            && first.start == last.start
-            && let Some(text) = phrase.of(first).split_once(',').map(|(value, _)| value)
-        {
-            value.end = value.start + text.len() as u32;
-        }
+        let next = equals.get(place + 1).map_or(tokens.len(), |next| next - 1);
+        let value = if next == at + 1 {
+            // In `a=1,b=2` the word `1,b` holds the next name.
+            phrase.place(phrase.of(first).split(',').next().unwrap_or(""))
+        } else {
+            let last = if first.kind == TokenKind::Bare { &tokens[next - 1] } else { first };
+            Span { end: last.end, ..phrase.word(first) }
+        };
+        let name = phrase.of(name).rsplit(',').next().unwrap_or("");
         list.push(Assignment { name: phrase.place(name), value });
     }
     list

@@ -44,7 +44,13 @@ fn call(phrase: &Phrase, faults: &mut Faults) -> Option<(Nodes, Kind)> {
 /// The positional words of a statement up to `params:`.
 fn bare_words<'a>(phrase: &Phrase<'a>) -> &'a [Token] {
     let words = phrase.positional();
-    let end = words.iter().position(|word| same_name(phrase.of(word), "params:")).unwrap_or(words.len());
+    let end = words
+        .iter()
+        .position(|word| {
+            let text = phrase.of(word);
+            text.ends_with(':') && same_name(text, "params:")
+        })
+        .unwrap_or(words.len());
     let words = &words[..end];
     let end = words.iter().rposition(|word| word.kind != TokenKind::Expression).map_or(0, |last| last + 1);
     &words[..end]

@@ -29,6 +29,11 @@ impl Faults {
         }
     }
 
+    /// Whether nothing more is kept.
+    pub fn is_full(&self) -> bool {
+        limit::DIAGNOSTICS < self.list.len()
+    }
+
     /// Keeps an error at a place.
     pub fn error(&mut self, kind: &'static str, span: Span, message: impl Into<String>) {
         self.push(Diagnostic::at(kind, Severity::Error, span, message));

@@ -1,9 +1,8 @@
-//! What can be said once everything is read: names used twice, pin counts, models and parameters of passives.
+//! What can be said once everything is read: names used twice, pin counts, definitions by name.
 
 use super::fault::{Faults, shown};
 use super::name::{name_hash, name_order, same_name};
-use super::number::{number, percentage};
-use super::{Kind, Model, Netlist, Passive, Scope, Statement, Value, Word};
+use super::{Kind, Model, Netlist, Scope, Statement, Word, settle};
 use crate::diagnostic::{Diagnostic, Label, Severity};
 use crate::source::Sources;
 use std::cmp::Ordering;
@@ -13,7 +12,7 @@ pub(super) fn finish(netlist: &mut Netlist, sources: &Sources, faults: &mut Faul
     empty(netlist, faults, sources);
     let index = Index::new(netlist, sources);
     pin_counts(netlist, &index, sources, faults);
-    settle_passives(netlist, &index, sources, faults);
+    settle::passives(netlist, &index, sources, faults);
     duplicates(&netlist.top, sources, faults);
     for subcircuit in &netlist.subcircuits {
         duplicates(&subcircuit.body, sources, faults);
@@ -21,17 +20,20 @@ pub(super) fn finish(netlist: &mut Netlist, sources: &Sources, faults: &mut Faul
 }
 
 /// Where a scope stands: the top, or a definition.
-type Level = Option<usize>;
+pub(super) type Level = Option<usize>;
 
-/// Definitions and models by name and level.
-struct Index {
+/// Definitions, models and parameters by name and level.
+pub(super) struct Index {
     /// Definitions, ordered by name, the level they are written in, and place.
     definitions: Vec<usize>,
     /// Models likewise: their level and their index in its scope.
     models: Vec<(Level, usize)>,
+    /// Parameters likewise: their name and their level.
+    parameters: Vec<(Word, Level)>,
 }
 
 impl Index {
+    /// Sorts the names of a whole netlist.
     fn new(netlist: &Netlist, sources: &Sources) -> Index {
         let key = |index: &usize| {
             (sources.text(netlist.subcircuits[*index].name), netlist.subcircuits[*index].parent)
@@ -44,7 +46,15 @@ impl Index {
         }
         let key = |at: &(Level, usize)| (sources.text(scope(netlist, at.0).models[at.1].name), at.0);
         models.sort_by(|a, b| order(key(a), key(b)));
-        Index { definitions, models }
+        let mut parameters: Vec<(Word, Level)> = Vec::new();
+        for level in levels(netlist) {
+            let defaults = level.map_or(&[][..], |index| &netlist.subcircuits[index].defaults);
+            let all = scope(netlist, level).parameters.iter().chain(defaults);
+            parameters.extend(all.map(|assignment| (assignment.name, level)));
+        }
+        let key = |at: &(Word, Level)| (sources.text(at.0), at.1);
+        parameters.sort_by(|a, b| order(key(a), key(b)));
+        Index { definitions, models, parameters }
     }
 
     /// The definition that a name means at a level: its own, else that of the level around it.
@@ -62,8 +72,15 @@ impl Index {
         })
     }
 
+    /// Whether a name is a parameter at a level.
+    pub(super) fn parameter(&self, netlist: &Netlist, sources: &Sources, name: &str, level: Level) -> bool {
+        let key = |at: &(Word, Level)| (sources.text(at.0), at.1);
+        around(netlist, level)
+            .any(|level| self.parameters.binary_search_by(|at| order(key(at), (name, level))).is_ok())
+    }
+
     /// The model that a name means at a level.
-    fn model<'a>(
+    pub(super) fn model<'a>(
         &self,
         netlist: &'a Netlist,
         sources: &Sources,
@@ -83,11 +100,11 @@ fn order(a: (&str, Level), b: (&str, Level)) -> Ordering {
     name_order(a.0, b.0).then(a.1.cmp(&b.1))
 }
 
-fn levels(netlist: &Netlist) -> impl Iterator<Item = Level> + use<> {
+pub(super) fn levels(netlist: &Netlist) -> impl Iterator<Item = Level> + use<> {
     std::iter::once(None).chain((0..netlist.subcircuits.len()).map(Some))
 }
 
-fn scope(netlist: &Netlist, level: Level) -> &Scope {
+pub(super) fn scope(netlist: &Netlist, level: Level) -> &Scope {
     level.map_or(&netlist.top, |index| &netlist.subcircuits[index].body)
 }
 
@@ -131,6 +148,9 @@ fn duplicates(scope: &Scope, sources: &Sources, faults: &mut Faults) {
     }
     twice.sort_unstable();
     for (again, first) in twice {
+        if faults.is_full() {
+            return;
+        }
         let (again, first) = (scope.elements[again as usize].name, scope.elements[first as usize].name);
         let message = format!("{} names two elements", shown(sources.text(again)));
         let mut fault = Diagnostic::at("duplicate-designator", Severity::Error, again, message);
@@ -161,7 +181,7 @@ fn pin_counts(netlist: &Netlist, index: &Index, sources: &Sources, faults: &mut 
                 continue;
             };
             let definition = &netlist.subcircuits[found];
-            if call.nodes.len() != definition.ports.len() {
+            if call.nodes.len() != definition.ports.len() && !faults.is_full() {
                 faults.push(pin_count(call, definition.name, definition.ports.len(), sources));
             }
         }
@@ -178,150 +198,4 @@ fn pin_count(call: &Statement, definition: Word, ports: usize, sources: &Sources
     let mut fault = Diagnostic::at("pin-count", Severity::Error, call.span, message);
     fault.labels.push(Label { span: definition, text: "defined here".to_owned() });
     fault
-}
-
-/// What is to be done with one passive.
-enum Settled {
-    /// It stays as it is.
-    Kept,
-    /// The named model's factor and tolerance are put in.
-    Model(Passive),
-    /// The word is a parameter, which gives the value.
-    Parameter(Word),
-    /// The word is a third net: the part has three pins.
-    Pin(Word),
-    /// Nothing gives a value.
-    Missing(Word),
-}
-
-/// Passives with a word that may be a model, a parameter or a third net.
-fn settle_passives(netlist: &mut Netlist, index: &Index, sources: &Sources, faults: &mut Faults) {
-    for level in levels(netlist) {
-        let doubtful =
-            |statement: &Statement| passive(&statement.kind).is_some_and(|passive| passive.model.is_some());
-        let elements = &scope(netlist, level).elements;
-        let places: Vec<usize> = (0..elements.len()).filter(|at| doubtful(&elements[*at])).collect();
-        if places.is_empty() {
-            continue;
-        }
-        let nets = net_hashes(elements, sources);
-        let settled: Vec<Settled> =
-            places.iter().map(|at| settle(netlist, index, sources, level, &elements[*at], &nets)).collect();
-        let scope = match level {
-            Some(index) => &mut netlist.subcircuits[index].body,
-            None => &mut netlist.top,
-        };
-        for (at, settled) in places.into_iter().zip(settled) {
-            apply(&mut scope.elements[at], settled, sources, faults);
-        }
-    }
-}
-
-fn passive(kind: &Kind) -> Option<&Passive> {
-    match kind {
-        Kind::Resistor(passive) | Kind::Capacitor(passive) | Kind::Inductor(passive) => Some(passive),
-        _ => None,
-    }
-}
-
-/// The hashes of all nets of a scope, sorted.
-fn net_hashes(elements: &[Statement], sources: &Sources) -> Vec<u64> {
-    let nodes = elements.iter().flat_map(|element| &element.nodes);
-    let mut hashes: Vec<u64> = nodes.map(|node| name_hash(sources.text(*node))).collect();
-    hashes.sort_unstable();
-    hashes.dedup();
-    hashes
-}
-
-fn settle(
-    netlist: &Netlist,
-    index: &Index,
-    sources: &Sources,
-    level: Level,
-    statement: &Statement,
-    nets: &[u64],
-) -> Settled {
-    let Some((passive, word)) = passive(&statement.kind).and_then(|passive| Some((passive, passive.model?)))
-    else {
-        return Settled::Kept;
-    };
-    let name = sources.text(word);
-    if let Some(model) = index.model(netlist, sources, name, level) {
-        return Settled::Model(with_model(*passive, model, statement, sources));
-    }
-    let value_behind = match passive.value {
-        Some(Value::Number(_, value) | Value::Expression(value)) => word.end <= value.start,
-        None => false,
-    };
-    if passive.value.is_none() {
-        let parameter = parameter(netlist, sources, name, level);
-        return if parameter { Settled::Parameter(word) } else { Settled::Missing(word) };
-    }
-    if value_behind && nets.binary_search(&name_hash(name)).is_ok() {
-        Settled::Pin(word)
-    } else {
-        Settled::Kept
-    }
-}
-
-/// Whether a name is a parameter at a level.
-fn parameter(netlist: &Netlist, sources: &Sources, name: &str, level: Level) -> bool {
-    around(netlist, level).any(|level| {
-        let defaults = level.map_or(&[][..], |index| &netlist.subcircuits[index].defaults);
-        let mut all = scope(netlist, level).parameters.iter().chain(defaults);
-        all.any(|assignment| same_name(sources.text(assignment.name), name))
-    })
-}
-
-/// A passive whose model multiplies its value (`R=`, `C=`, `L=`) and states its tolerance (`DEV=`, `TOL=`).
-fn with_model(mut passive: Passive, model: &Model, statement: &Statement, sources: &Sources) -> Passive {
-    let (letter, kinds): (&str, &[&str]) = match statement.kind {
-        Kind::Resistor(_) => ("r", &["res", "r"]),
-        Kind::Capacitor(_) => ("c", &["cap", "c"]),
-        _ => ("l", &["ind", "l"]),
-    };
-    if !kinds.iter().any(|kind| same_name(kind, sources.text(model.kind))) {
-        return passive;
-    }
-    for assignment in &model.parameters {
-        let text = sources.text(assignment.value);
-        let name = sources.text(assignment.name);
-        if same_name(name, letter)
-            && let (Some(factor), Some(Value::Number(value, word))) = (number(text), passive.value)
-        {
-            passive.value = Some(Value::Number(value * factor.value, word));
-        } else if same_name(name, "dev") || same_name(name, "tol") {
-            passive.tolerance = passive.tolerance.or_else(|| percentage(text));
-        }
-    }
-    passive
-}
-
-fn apply(statement: &mut Statement, settled: Settled, sources: &Sources, faults: &mut Faults) {
-    let name = shown(sources.text(statement.name));
-    let (Kind::Resistor(passive) | Kind::Capacitor(passive) | Kind::Inductor(passive)) = &mut statement.kind
-    else {
-        return;
-    };
-    match settled {
-        Settled::Kept => {}
-        Settled::Model(with_model) => {
-            *passive = with_model;
-            if passive.value.is_none() {
-                faults.warning("missing-value", statement.span, format!("{name} has a model, but no value"));
-            }
-        }
-        Settled::Parameter(word) => (passive.model, passive.value) = (None, Some(Value::Expression(word))),
-        Settled::Missing(word) => {
-            let message = format!("expected the value of {name}, found {}", shown(sources.text(word)));
-            faults.error("missing-value", word, message);
-        }
-        Settled::Pin(word) => {
-            passive.model = None;
-            statement.nodes.push(word);
-            if !matches!(statement.kind, Kind::Resistor(_)) {
-                statement.kind = Kind::Unmodelled;
-            }
-        }
-    }
 }

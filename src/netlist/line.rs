@@ -45,8 +45,8 @@ pub(super) struct Line {
     pub unclosed: Option<usize>,
     /// Whether it goes on past the limit, where it was cut off.
     pub long: bool,
-    /// Whether an expression of the first physical line goes on in the next.
-    crossed: bool,
+    /// Whether an expression goes over a line break.
+    pub crossed: bool,
     /// Whether a word begins with `/`, so that a name may hold blanks.
     pub sheet: bool,
 }
@@ -219,18 +219,14 @@ fn enclosed(text: &str, open: usize, close: u8, line: &mut Line) -> usize {
 
 /// What stands in double quotes on this line; without a closing quote the rest of the line.
 fn quoted(text: &str, open: usize, line: &mut Line) -> usize {
-    let end = line_end(text, open);
-    match text[open + 1..end].find('"') {
-        Some(length) => {
-            push(line, TokenKind::Quoted, open + 1, open + 1 + length);
-            open + 2 + length
-        }
-        None => {
-            line.unclosed = Some(open);
-            push(line, TokenKind::Quoted, open + 1, end);
-            end
-        }
+    let rest = &text.as_bytes()[open + 1..];
+    let length = rest.iter().position(|byte| matches!(byte, b'"' | b'\n')).unwrap_or(rest.len());
+    let end = push(line, TokenKind::Quoted, open + 1, open + 1 + length);
+    if rest.get(length) == Some(&b'"') {
+        return end + 1;
     }
+    line.unclosed = Some(open);
+    end
 }
 
 /// Where the words of the first physical line end, closing quotes included.

@@ -3,6 +3,7 @@
 use std::cmp::Ordering;
 
 /// Whether two names are the same in any case.
+#[inline]
 pub fn same_name(a: &str, b: &str) -> bool {
     a.eq_ignore_ascii_case(b) || (!a.is_ascii() && !b.is_ascii() && name_order(a, b) == Ordering::Equal)
 }

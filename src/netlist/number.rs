@@ -1,8 +1,9 @@
 //! Values as netlists write them: SPICE scale factors, RKM codes, and what exporters hang on them.
 
+use super::remark;
 use nom::branch::alt;
-use nom::bytes::complete::{tag, tag_no_case, take_till, take_while, take_while1};
-use nom::character::complete::{char, digit0, digit1, one_of};
+use nom::bytes::complete::{tag_no_case, take_while};
+use nom::character::complete::{digit1, one_of};
 use nom::combinator::{opt, value};
 use nom::sequence::{pair, preceded};
 use nom::{IResult, Parser};
@@ -28,7 +29,7 @@ pub struct Number {
 
 /// A decimal number before it is scaled: `digits * 10^exponent`.
 #[derive(Debug, Clone, Copy)]
-struct Decimal {
+pub(super) struct Decimal {
     digits: u64,
     exponent: i32,
     negative: bool,
@@ -48,24 +49,27 @@ struct Scale {
 const CODE_DIGITS: usize = 3;
 
 /// The fault type of the parsers here: nothing but 'no'.
-type Fault<'a> = nom::error::Error<&'a str>;
+pub(super) type Fault<'a> = nom::error::Error<&'a str>;
 
 /// Reads a whole word as a value; `None` where it isn't one.
 ///
 /// Scale factors are SPICE's: any case, `M` is milli, `MEG` is mega, letters behind are a unit. In an RKM code
 /// `M` is mega and `m` is milli, as IEC 60062 has it.
 pub fn number(text: &str) -> Option<Number> {
-    let (rest, mut found) = alt((prefix, leading_code)).parse(text).ok()?;
+    // Most words that are asked about are names, and most names begin with a letter.
+    let numeric = text.starts_with(|first: char| first.is_ascii_digit() || matches!(first, '.' | '+' | '-'));
+    let (rest, mut found) = if numeric { prefix(text) } else { leading_code(text) }.ok()?;
     if !rest.is_empty() {
-        tail(rest, &mut found)?;
+        remark::read(rest, &mut found)?;
     }
     found.value.is_finite().then_some(found)
 }
 
-/// A percentage as a ratio: `1%`, `<20%`, `+-5%`.
-pub fn percentage(text: &str) -> Option<f64> {
-    let (rest, amount) = preceded(bound, decimal).parse(text).ok()?;
-    (rest == "%").then(|| amount.shifted(1, -2))
+/// Reads the whole text of an expression as a number, where it is nothing else; nothing may hang behind it, for there
+/// `1/2` is a division.
+pub(super) fn literal(text: &str) -> Option<f64> {
+    let (rest, found) = prefix(text.trim()).ok()?;
+    (rest.is_empty() && found.value.is_finite()).then_some(found.value)
 }
 
 /// The factor of a word that is nothing but a scale factor with or without a unit, such as `nF` behind a blank.
@@ -117,23 +121,39 @@ fn no(input: &str) -> nom::Err<Fault<'_>> {
     nom::Err::Error(nom::error::Error::new(input, nom::error::ErrorKind::Verify))
 }
 
+/// Digits, perhaps none.
+fn digits(input: &str) -> IResult<&str, &str> {
+    let end = input.bytes().position(|byte| !byte.is_ascii_digit()).unwrap_or(input.len());
+    Ok((&input[end..], &input[..end]))
+}
+
 /// Digits with sign, point and exponent.
-fn decimal(input: &str) -> IResult<&str, Decimal> {
-    let (rest, sign) = opt(one_of("+-")).parse(input)?;
-    let (rest, whole) = digit0(rest)?;
-    let (rest, fraction) = opt(preceded(char('.'), digit0)).parse(rest)?;
+pub(super) fn decimal(input: &str) -> IResult<&str, Decimal> {
+    let (rest, negative) = match input.as_bytes().first() {
+        Some(b'-') => (&input[1..], true),
+        Some(b'+') => (&input[1..], false),
+        _ => (input, false),
+    };
+    let (rest, whole) = digits(rest)?;
+    let (rest, fraction) = match rest.strip_prefix('.') {
+        Some(rest) => digits(rest).map(|(rest, fraction)| (rest, Some(fraction)))?,
+        None => (rest, None),
+    };
     let part = fraction.unwrap_or("");
     if whole.is_empty() && part.is_empty() {
         return Err(no(input));
     }
-    let (rest, power) = opt(preceded(one_of("eE"), pair(opt(one_of("+-")), digit1))).parse(rest)?;
-    let mut amount = Decimal { digits: 0, exponent: 0, negative: sign == Some('-'), whole: false };
+    let mut amount = Decimal { digits: 0, exponent: 0, negative, whole: fraction.is_none() };
     amount.append(whole, 0);
     amount.append(part, -1);
-    amount.whole = fraction.is_none() && power.is_none();
-    if let Some((sign, digits)) = power {
-        let size = digits.bytes().fold(0i32, |size, digit| (size * 10 + i32::from(digit - b'0')).min(10_000));
+    if !rest.starts_with(['e', 'E']) {
+        return Ok((rest, amount));
+    }
+    let (rest, power) = opt(preceded(one_of("eE"), pair(opt(one_of("+-")), digit1))).parse(rest)?;
+    if let Some((sign, power)) = power {
+        let size = power.bytes().fold(0i32, |size, digit| (size * 10 + i32::from(digit - b'0')).min(10_000));
         amount.exponent += if sign == Some('-') { -size } else { size };
+        amount.whole = false;
     }
     Ok((rest, amount))
 }
@@ -153,11 +173,11 @@ impl Decimal {
     }
 
     /// The nearest `f64` to the number times `factor * 10^exponent`.
-    fn shifted(self, factor: u64, exponent: i32) -> f64 {
+    pub(super) fn shifted(self, factor: u64, exponent: i32) -> f64 {
         let digits = self.digits.saturating_mul(factor);
         let exponent = self.exponent.saturating_add(exponent);
         // Both numbers are exact in an f64 here, so that one operation rounds once.
-        let size = if digits < 1 << 53 && -22 <= exponent && exponent <= 22 {
+        let size = if digits < 1 << 53 && (-22..=22).contains(&exponent) {
             let power = POWERS[exponent.unsigned_abs() as usize];
             if exponent < 0 { digits as f64 / power } else { digits as f64 * power }
         } else {
@@ -203,22 +223,20 @@ fn scale(input: &str) -> IResult<&str, Scale> {
 /// The micro sign in the forms it is found in: a letter u, U+00B5, U+03BC, the mark of a lost character, and
 /// the two signs in UTF-8 that were read as Windows-1252.
 fn micro(input: &str) -> IResult<&str, ()> {
-    let sign = alt((
-        tag("u"),
-        tag("U"),
-        tag("\u{b5}"),
-        tag("\u{3bc}"),
-        tag("\u{fffd}"),
-        tag("\u{c2}\u{b5}"),
-        tag("\u{ce}\u{bc}"),
-    ));
-    value((), sign).parse(input)
+    let mut letters = input.chars();
+    let found = match letters.next() {
+        Some('u' | 'U' | '\u{b5}' | '\u{3bc}' | '\u{fffd}') => true,
+        Some('\u{c2}') => letters.next() == Some('\u{b5}'),
+        Some('\u{ce}') => letters.next() == Some('\u{bc}'),
+        _ => false,
+    };
+    if found { Ok((letters.as_str(), ())) } else { Err(no(input)) }
 }
 
 /// The rest of an RKM code behind its whole part: the letter, the digits of the fraction, a tolerance letter.
 fn code(input: &str, amount: Decimal) -> IResult<&str, Number> {
     let (rest, (letter, exponent)) = code_letter(input)?;
-    let (rest, fraction) = digit0(rest)?;
+    let (rest, fraction) = digits(rest)?;
     let bare = fraction.is_empty();
     if fraction.len() > CODE_DIGITS || (bare && !matches!(letter, 'R' | 'r')) {
         return Err(no(input));
@@ -251,11 +269,9 @@ fn leading_code(input: &str) -> IResult<&str, Number> {
 
 /// The letter of an RKM code and the power of ten it stands for.
 fn code_letter(input: &str) -> IResult<&str, (char, i32)> {
-    if let Ok((rest, ())) = micro(input) {
-        return Ok((rest, (input.chars().next().unwrap_or('u'), -6)));
-    }
-    let (rest, letter) = one_of("RrKkMmGTnNpPLV")(input)?;
+    let letter = input.chars().next().unwrap_or(' ');
     let exponent = match letter {
+        'R' | 'r' | 'V' => 0,
         'K' | 'k' => 3,
         'M' => 6,
         'G' => 9,
@@ -263,9 +279,9 @@ fn code_letter(input: &str) -> IResult<&str, (char, i32)> {
         'm' | 'L' => -3,
         'n' | 'N' => -9,
         'p' | 'P' => -12,
-        _ => 0,
+        _ => return micro(input).map(|(rest, ())| (rest, (letter, -6))),
     };
-    Ok((rest, (letter, exponent)))
+    Ok((&input[1..], (letter, exponent)))
 }
 
 /// The tolerance that a letter behind an RKM code states (IEC 60062, symmetrical tolerances); the `F` behind a
@@ -291,56 +307,13 @@ fn code_tolerance(letter: &str, exponent: i32) -> Option<f64> {
 }
 
 /// Letters of a unit; whatever is left of an ohm sign after a wrong decoding counts as one.
-fn is_unit(letter: char) -> bool {
+pub(super) fn is_unit(letter: char) -> bool {
     letter.is_ascii_alphabetic() || (!letter.is_ascii() && letter != '\u{b1}')
-}
-
-/// Signs in front of a tolerance.
-fn bound(input: &str) -> IResult<&str, ()> {
-    value((), opt(alt((tag("+/-"), tag("+-"), tag("\u{b1}"), tag("<="), tag("<"))))).parse(input)
-}
-
-/// Reads what hangs behind a value: tolerance and rating; other remarks (a package, a dielectric) are passed over.
-/// `None` where the text doesn't end the value.
-fn tail(text: &str, found: &mut Number) -> Option<()> {
-    let separator = |letter: char| matches!(letter, '_' | '/' | ',' | '(' | ')' | ' ' | '\t' | '\u{a0}');
-    if !text.starts_with(|first: char| separator(first) || matches!(first, '\u{b1}' | '<')) {
-        return None;
-    }
-    let mut rest = text;
-    while !rest.is_empty() {
-        let item = |input| -> IResult<&str, (f64, &str)> {
-            let (rest, amount) = preceded(bound, decimal).parse(input)?;
-            let (rest, divisor) = opt(preceded(char('/'), decimal)).parse(rest)?;
-            let (rest, unit) = alt((tag("%"), take_while1(is_unit))).parse(rest)?;
-            Ok((rest, (amount.shifted(1, 0) / divisor.map_or(1.0, |divisor| divisor.shifted(1, 0)), unit)))
-        };
-        rest = match item(rest) {
-            Ok((rest, (amount, unit))) => {
-                remark(amount, unit, found);
-                rest
-            }
-            Err(_) => take_till::<_, _, Fault>(separator)(rest).map_or("", |(rest, _)| rest),
-        };
-        rest = take_while::<_, _, Fault>(separator)(rest).map_or("", |(rest, _)| rest);
-    }
-    Some(())
-}
-
-/// Keeps one tolerance or rating.
-fn remark(amount: f64, unit: &str, found: &mut Number) {
-    match unit {
-        "%" => found.tolerance = Some(amount / 100.0),
-        "W" | "w" | "V" | "v" | "VDC" | "Vdc" => found.rating = Some(amount),
-        "mW" | "mw" => found.rating = Some(amount / 1_000.0),
-        "kV" | "KV" => found.rating = Some(amount * 1_000.0),
-        _ => {}
-    }
 }
 
 #[cfg(test)]
 mod tests {
-    use super::{number, percentage, unit};
+    use super::{number, unit};
 
     fn value(text: &str) -> Option<f64> {
         number(text).map(|number| number.value)
@@ -397,20 +370,6 @@ mod tests {
             assert_eq!(value(&format!("2.2{sign}F")), Some(2.2e-6), "{sign}");
             assert_eq!(value(&format!("2{sign}2")), Some(2.2e-6), "{sign}");
         }
-    }
-
-    #[test]
-    fn tolerance_and_rating_hang_behind() {
-        let tail = |text| number(text).map(|number| (number.tolerance, number.rating)).unwrap();
-        assert_eq!(tail("33000\u{b5}F/16V"), (None, Some(16.0)));
-        assert_eq!(tail("10K_1%"), (Some(0.01), None));
-        assert_eq!(tail("1K5_0.5W+"), (None, Some(0.5)));
-        assert_eq!(tail("22u_<20%"), (Some(0.2), None));
-        assert_eq!(tail("10k/1/4W"), (None, Some(0.25)));
-        assert_eq!(tail("100n_X7R_0603"), (None, None));
-        assert_eq!(tail("10k\u{b1}5%"), (Some(0.05), None));
-        assert_eq!(percentage("<20%"), Some(0.2));
-        assert_eq!(percentage("1"), None);
     }
 
     #[test]

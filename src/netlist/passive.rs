@@ -4,8 +4,9 @@ use super::element::{is_device, missing_node, part, places};
 use super::fault::{Faults, shown};
 use super::line::{Token, TokenKind};
 use super::name::same_name;
-use super::number::{Number, number, percentage, unit};
+use super::number::{Number, number, unit};
 use super::phrase::{Nodes, Phrase};
+use super::remark::percentage;
 use super::{Kind, Passive, Value, Word};
 use smallvec::smallvec;
 
@@ -17,7 +18,8 @@ pub(super) fn read(phrase: &Phrase, letter: u8, faults: &mut Faults) -> Option<(
         return None;
     }
     let mut passive = Passive::default();
-    let (nodes, behind) = match value_at(phrase, words) {
+    let found = value_at(phrase, words);
+    let (nodes, behind) = match found.map(|(at, _)| at) {
         Some(2) => (places(phrase, &words[..2]), 2),
         Some(3) if !shows_blank(phrase, words) => {
             passive.model = Some(phrase.word(&words[2]));
@@ -27,8 +29,8 @@ pub(super) fn read(phrase: &Phrase, letter: u8, faults: &mut Faults) -> Option<(
         Some(_) => return Some(part(phrase)),
         None => return without_value(phrase, letter, faults),
     };
-    let value = &words[behind];
-    passive.value = Some(literal(phrase, value, &mut passive));
+    let literal = found.and_then(|(_, literal)| literal);
+    passive.value = Some(value(phrase, &words[behind], literal, &mut passive));
     remarks(phrase, &words[behind + 1..], &mut passive, faults);
     keys(phrase, letter, &mut passive);
     check(phrase, letter, &passive, faults);
@@ -43,16 +45,16 @@ fn kind(letter: u8, passive: Passive) -> Kind {
     }
 }
 
-/// Where the value stands: the first word behind two nodes that is one. Where a sheet's name with a blank has moved
-/// the words, the last of several numbers.
-fn value_at(phrase: &Phrase, words: &[Token]) -> Option<usize> {
-    let is_value = |at: usize| {
-        let word = &words[at];
-        word.kind == TokenKind::Expression || number(phrase.of(word)).is_some()
+/// Where the value stands: the first word behind two nodes that is one, with the number it is unless it is an
+/// expression. Where a sheet's name with a blank has moved the words, the last of several numbers.
+fn value_at(phrase: &Phrase, words: &[Token]) -> Option<(usize, Option<Number>)> {
+    let value = |at: usize| match words[at].kind {
+        TokenKind::Expression => Some((at, None)),
+        _ => number(phrase.of(&words[at])).map(|number| (at, Some(number))),
     };
-    let first = (2..words.len()).find(|at| is_value(*at))?;
+    let first = (2..words.len()).find_map(value)?;
     let moved = phrase.sheet && words[..2].iter().any(|word| phrase.of(word).starts_with('/'));
-    if moved { (first..words.len()).rev().find(|at| is_value(*at)) } else { Some(first) }
+    if moved { (first.0..words.len()).rev().find_map(value) } else { Some(first) }
 }
 
 /// Whether three words before a value can't be two nodes and a model: one of the nodes begins with `/` and the word
@@ -98,15 +100,11 @@ fn blank_nodes(phrase: &Phrase, words: &[Token], faults: &mut Faults) -> Option<
 }
 
 /// The value of a word, with the tolerance and the rating that it carries.
-fn literal(phrase: &Phrase, word: &Token, passive: &mut Passive) -> Value {
-    if word.kind != TokenKind::Expression
-        && let Some(Number { value, tolerance, rating, .. }) = number(phrase.of(word))
-    {
-        passive.tolerance = passive.tolerance.or(tolerance);
-        passive.rating = passive.rating.or(rating);
-        return Value::Number(value, phrase.word(word));
-    }
-    phrase.value(word)
+fn value(phrase: &Phrase, word: &Token, literal: Option<Number>, passive: &mut Passive) -> Value {
+    let Some(Number { value, tolerance, rating, .. }) = literal else { return phrase.value(word) };
+    passive.tolerance = passive.tolerance.or(tolerance);
+    passive.rating = passive.rating.or(rating);
+    Value::Number(value, phrase.word(word))
 }
 
 /// Words behind the value: a tolerance, the unit behind a blank, a model.
@@ -145,11 +143,14 @@ fn remarks(phrase: &Phrase, words: &[Token], passive: &mut Passive, faults: &mut
 /// `key = value` pairs: the value itself, tolerance, rating, number of parts in parallel.
 fn keys(phrase: &Phrase, letter: u8, passive: &mut Passive) {
     let mut parallel = None;
-    for (key, value) in phrase.pairs(phrase.first_key()) {
-        let text = phrase.of(&value);
-        let amount = number(text).map(|number| number.value);
+    for (key, word) in phrase.pairs(phrase.first_key()) {
+        let text = phrase.of(&word);
+        let literal = if word.kind == TokenKind::Expression { None } else { number(text) };
+        let amount = literal.map(|number| number.value);
         match phrase.of(&key) {
-            key if is_value_key(key, letter) => passive.value = Some(literal(phrase, &value, passive)),
+            key if is_value_key(key, letter) => {
+                passive.value = Some(value(phrase, &word, literal, passive));
+            }
             key if same_name(key, "tol") => {
                 passive.tolerance =
                     percentage(text).or(amount.map(|percent| percent / 100.0)).or(passive.tolerance);
@@ -173,6 +174,14 @@ fn keys(phrase: &Phrase, letter: u8, passive: &mut Passive) {
 fn is_value_key(key: &str, letter: u8) -> bool {
     key.len() == 1 && key.as_bytes()[0].eq_ignore_ascii_case(&letter)
         || ["value", "val"].iter().any(|name| same_name(key, name))
+        || same_name(
+            key,
+            match letter {
+                b'R' => "res",
+                b'C' => "cap",
+                _ => "ind",
+            },
+        )
 }
 
 /// A passive without a literal value behind its nodes: a value given by a key, the name of a parameter or of a model,

@@ -1,7 +1,7 @@
 //! One statement as its reader sees it: words by place, positional ones first, then `key = value` pairs.
 
 use super::line::{Token, TokenKind};
-use super::number::number;
+use super::number::{literal, number};
 use super::{Assignment, Value, Word};
 use crate::source::{FileId, Span};
 use smallvec::SmallVec;
@@ -19,6 +19,8 @@ pub(super) struct Phrase<'a> {
     pub span: Span,
     /// Whether a word begins with `/`.
     pub sheet: bool,
+    /// Whether an expression goes over a line break.
+    pub crossed: bool,
 }
 
 impl<'a> Phrase<'a> {
@@ -72,11 +74,12 @@ impl<'a> Phrase<'a> {
 
     /// A token as a value: a number where it is one, else an expression.
     pub fn value(&self, token: &Token) -> Value {
-        let text = self.of(token).trim();
-        // In an expression `R47` is a name, not a code.
-        let name = token.kind == TokenKind::Expression && text.starts_with(char::is_alphabetic);
-        let literal = if name { None } else { number(text) };
+        let text = self.of(token);
+        let found = match token.kind {
+            TokenKind::Expression => literal(text),
+            _ => number(text).map(|number| number.value),
+        };
         let word = self.word(token);
-        literal.map_or(Value::Expression(word), |number| Value::Number(number.value, word))
+        found.map_or(Value::Expression(word), |value| Value::Number(value, word))
     }
 }

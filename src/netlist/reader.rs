@@ -35,7 +35,12 @@ struct State {
     sections: Option<bool>,
     /// Whether a statement of another language was reported.
     foreign: bool,
+    /// Whether the rest of it is left unread.
+    ended: bool,
 }
+
+/// Bytes of a long line of an export; so many lines at least are made room for at once, which is given back.
+const TYPICAL_LINE: usize = 48;
 
 /// A file that is being read, and how far.
 struct Frame {
@@ -57,6 +62,7 @@ impl Reader {
             self.netlist.title = title;
             frames[0].at = at;
         }
+        self.netlist.top.elements.reserve_exact(first.text.len() / TYPICAL_LINE);
         while let Some(frame) = frames.last_mut() {
             self.current = std::mem::take(&mut frame.state);
             let request = self.file(&sources.file(frame.file).text, frame, &mut line);
@@ -100,7 +106,7 @@ impl Reader {
 
     /// Reads on in one file up to an include line or its end.
     fn file(&mut self, text: &str, frame: &mut Frame, line: &mut Line) -> Option<(Word, Option<Word>, Span)> {
-        while !self.stopped && next_line(text, &mut frame.at, line) {
+        while !self.stopped && !self.current.ended && next_line(text, &mut frame.at, line) {
             let span = Span { file: frame.file, start: line.start as u32, end: line.first_end as u32 };
             let Some(first) = line.tokens.first().copied() else { continue };
             let word = first.of(text);
@@ -113,7 +119,14 @@ impl Reader {
             if line.sheet {
                 sheet::join(text, frame.file, &mut line.tokens, &mut self.faults);
             }
-            let phrase = Phrase { text, file: frame.file, tokens: &line.tokens, span, sheet: line.sheet };
+            let phrase = Phrase {
+                text,
+                file: frame.file,
+                tokens: &line.tokens,
+                span,
+                sheet: line.sheet,
+                crossed: line.crossed,
+            };
             if !self.readable(&phrase, line) {
                 continue;
             }
@@ -158,7 +171,8 @@ impl Reader {
         let listed = phrase.tokens.get(1).is_some_and(|next| phrase.of(next).starts_with('('));
         let controlled =
             matches!(word.as_bytes()[0].to_ascii_uppercase(), b'E' | b'G' | b'F' | b'H' | b'B' | b'.');
-        if (listed && !controlled) || title::is_dotless(word) {
+        let dotless = title::is_dotless(word);
+        if (listed && !controlled) || dotless {
             if !self.current.foreign {
                 let message = format!(
                     "expected a netlist, found a statement of another language: {}",
@@ -167,6 +181,8 @@ impl Reader {
                 self.faults.error("not-a-netlist", phrase.span, message);
             }
             self.current.foreign = true;
+            // Without its definitions the rest would be read into the wrong scope.
+            self.current.ended |= dotless;
             return false;
         }
         true
@@ -179,6 +195,15 @@ impl Reader {
         let Some((nodes, kind)) = element::read(phrase, &mut self.faults) else { return };
         let name = phrase.word(&phrase.tokens[0]);
         if !nodes.iter().chain([&name]).all(|word| self.short(*word)) {
+            return;
+        }
+        let whole = |word: &Word| {
+            let text = &phrase.text[word.start as usize..word.end as usize];
+            !text.is_empty() && (!phrase.crossed || !text.contains('\n'))
+        };
+        if let Some(node) = nodes.iter().find(|node| !whole(node)) {
+            let message = format!("expected the name of a net of {}", shown(phrase.of(&phrase.tokens[0])));
+            self.faults.error("unreadable-name", *node, message);
             return;
         }
         grow(&mut self.scope().elements).push(Statement { name, nodes, kind, span: phrase.span });

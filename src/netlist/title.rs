@@ -18,8 +18,7 @@ pub(super) fn take(text: &str, path: &str, file: FileId, faults: &mut Faults) ->
     let ending = path.rfind('.').map_or("", |at| &path[at..]);
     let library = LIBRARIES.iter().any(|library| same_name(library, ending));
     let first = line.split_whitespace().next().unwrap_or("");
-    let begins = |word: &&str| same_name(word, first);
-    if library || [".subckt", ".macro", ".model", ".title"].iter().any(|word| begins(&word)) {
+    if library || [".subckt", ".macro", ".model", ".title"].iter().any(|word| same_name(word, first)) {
         return (None, 0);
     }
     let span = |text_of: &str| {
@@ -31,7 +30,8 @@ pub(super) fn take(text: &str, path: &str, file: FileId, faults: &mut Faults) ->
         faults.warning("title-statement", span(line), message);
     }
     let title = line.trim_start_matches(['*', ' ', '\t']).trim_end_matches(['*', ' ', '\t']);
-    ((!title.is_empty()).then(|| span(title)), end)
+    // A line of dashes or stars is an ornament.
+    (title.contains(char::is_alphanumeric).then(|| span(title)), end)
 }
 
 /// Whether a title reads as a whole statement.
@@ -130,7 +130,8 @@ const DOTLESS: [&str; 17] = [
 
 /// Whether a statement begins with a word of such a language.
 pub(super) fn is_dotless(name: &str) -> bool {
-    DOTLESS.iter().any(|word| same_name(word, name))
+    let first = name.bytes().next().map(|first| first.to_ascii_lowercase());
+    DOTLESS.iter().any(|word| word.bytes().next() == first && same_name(word, name))
 }
 
 /// Whether one of the first lines of a file, the title among them, is such a statement.

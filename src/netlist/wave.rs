@@ -4,9 +4,9 @@ use super::element::{is_device, missing_node, part, places};
 use super::fault::Faults;
 use super::line::TokenKind;
 use super::name::same_name;
-use super::number::number;
+use super::number::{literal, number};
 use super::phrase::{Nodes, Phrase};
-use super::{Kind, Value, Waveform};
+use super::{Kind, Value, Waveform, evaluate};
 use smallvec::SmallVec;
 
 /// Waveforms whose span can be told.
@@ -103,13 +103,18 @@ impl Piece<'_> {
         self.kind == TokenKind::Expression || (self.kind == TokenKind::Bare && number(self.text).is_some())
     }
 
+    /// Its value; an expression has one here where it holds no names.
     fn number(&self) -> Option<f64> {
-        number(self.text.trim()).map(|number| number.value)
+        match self.kind {
+            TokenKind::Expression => evaluate(self.text, &|_| None).ok(),
+            _ => number(self.text).map(|number| number.value),
+        }
     }
 
     fn value(&self, phrase: &Phrase) -> Value {
         let place = phrase.place(self.text);
-        self.number().map_or(Value::Expression(place), |value| Value::Number(value, place))
+        let found = if self.kind == TokenKind::Expression { literal(self.text) } else { self.number() };
+        found.map_or(Value::Expression(place), |value| Value::Number(value, place))
     }
 }
 
