@@ -132,11 +132,19 @@ fn run_ledger(asked: &Ledger) -> u8 {
     let stages = || outcome.report.boards.iter().flat_map(|board| &board.stages);
     match stages().find(|stage| stage.id.eq_ignore_ascii_case(&asked.stage)) {
         Some(stage) => {
-            if print(&report::ledger_text(stage, style(true))) && outcome.unusable.is_empty() { 0 } else { 2 }
+            if print(&report::ledger_text(stage, style(true))) && outcome.unusable.is_empty() {
+                0
+            } else {
+                2
+            }
         }
         None => {
             let known: Vec<&str> = stages().map(|stage| stage.id.as_str()).collect();
-            complain(&[format!("no stage {}; the stages are: {}", crate::source::quote(&asked.stage), known.join(", "))]);
+            complain(&[format!(
+                "no stage {}; the stages are: {}",
+                crate::source::quote(&asked.stage),
+                known.join(", ")
+            )]);
             2
         }
     }
@@ -160,7 +168,8 @@ fn print(text: &str) -> bool {
 
 fn style(all: bool) -> Style {
     const USUAL: usize = 100;
-    let colour = std::io::stdout().is_terminal() && std::env::var_os("NO_COLOR").is_none_or(|value| value.is_empty());
+    let colour =
+        std::io::stdout().is_terminal() && std::env::var_os("NO_COLOR").is_none_or(|value| value.is_empty());
     let width = std::env::var("COLUMNS").ok().and_then(|columns| columns.parse().ok()).unwrap_or(USUAL);
     Style { colour, width: width.clamp(40, 200), all }
 }

@@ -25,7 +25,6 @@ pub use ledger::{Item, Line};
 pub use range::{Extreme, PinVoltages};
 pub use stage::{Input, Main, Requirement, Review, Stage, Transfer, explain};
 
-
 use crate::device::Rank;
 
 /// Which way a figure turns bad.
@@ -80,8 +79,10 @@ impl Figure {
 
     /// Share of each line's magnitude in the sum of all; the base has none.
     pub fn shares(&self) -> Vec<Option<f64>> {
-        let total: f64 = self.ledger.iter().filter(|line| line.item != Item::Nominal).map(|line| line.effect.abs()).sum();
-        let share = |line: &Line| (line.item != Item::Nominal && 0.0 < total).then(|| line.effect.abs() / total);
+        let total: f64 =
+            self.ledger.iter().filter(|line| line.item != Item::Nominal).map(|line| line.effect.abs()).sum();
+        let share =
+            |line: &Line| (line.item != Item::Nominal && 0.0 < total).then(|| line.effect.abs() / total);
         self.ledger.iter().map(share).collect()
     }
 }

@@ -1,5 +1,6 @@
 //! What leaves the program. One file a format; formats read a [`Report`] and compute nothing.
 
+mod harmless;
 mod json;
 mod text;
 

@@ -8,8 +8,8 @@ mod finding;
 mod judge;
 mod read;
 
-pub use judge::{Judged, Subject, judge, shown};
 pub use finding::{Finding, Waived};
+pub use judge::{Judged, Subject, judge, shown};
 pub use read::read_pack;
 
 /// One entry of a rule pack: a figure or fact with its limit, severity, scope, reason and source.

@@ -4,8 +4,8 @@
 
 mod words;
 
-pub use words::{nearest, quote};
 use encoding_rs::{Encoding, UTF_8, UTF_16BE, UTF_16LE, WINDOWS_1252};
+pub use words::{nearest, quote};
 
 /// Why bytes are no text.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, thiserror::Error)]

@@ -17,8 +17,10 @@ pub fn lay_out(circuit: &mut Circuit) -> Layout {
     ends::find(circuit, &mut layout);
     let networks = Networks::of(circuit, &layout);
     layout.blocks = blocks(circuit, &layout, &networks);
-    let several = layout.blocks.iter().filter(|block| 1 < block.members.len()).flat_map(|block| &block.members);
-    let alone = |amp: &AmpId| (*amp, block(circuit, &layout, &networks, vec![*amp], Loads::default(), &|_| false));
+    let several =
+        layout.blocks.iter().filter(|block| 1 < block.members.len()).flat_map(|block| &block.members);
+    let alone =
+        |amp: &AmpId| (*amp, block(circuit, &layout, &networks, vec![*amp], Loads::default(), &|_| false));
     let mut locals: Vec<(AmpId, Block)> = several.map(alone).collect();
     locals.sort_by_key(|(amp, _)| *amp);
     layout.locals = locals;

@@ -53,17 +53,15 @@ struct Side {
 fn side(circuit: &Circuit, layout: &Layout, input: NetId) -> Side {
     let conducts = |kind: &ElementKind| !matches!(kind, ElementKind::Capacitor(_));
     let reached = walk(circuit, layout, input, conducts);
-    let fed = circuit.currents.iter().any(|current| reached.contains(&current.into) || reached.contains(&current.from) && current.from != Circuit::GROUND);
+    let fed = circuit.currents.iter().any(|current| {
+        reached.contains(&current.into) || reached.contains(&current.from) && current.from != Circuit::GROUND
+    });
     Side { held: reached.into_iter().filter(|net| layout.role(*net) != Role::Free).collect(), fed }
 }
 
 /// Names every amplifier, and the group of those that make one instrumentation amplifier; `level` tells
 /// how much of a signal a held net is.
-pub fn name(
-    circuit: &Circuit,
-    layout: &Layout,
-    level: &dyn Fn(NetId) -> u8,
-) -> Vec<(Topology, Option<u32>)> {
+pub fn name(circuit: &Circuit, layout: &Layout, level: &dyn Fn(NetId) -> u8) -> Vec<(Topology, Option<u32>)> {
     let sides: Vec<(Side, Side)> = layout
         .amps
         .iter()

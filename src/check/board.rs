@@ -2,9 +2,9 @@
 
 use crate::block::{Layout, lay_out, name};
 use crate::budget::{self, Budget};
+use crate::check::Options;
 use crate::check::files::{self, Includer, Packs};
 use crate::check::stages::{self, Judgement};
-use crate::check::Options;
 use crate::circuit::{self, Circuit, NetId};
 use crate::diagnostic::{Diagnostic, Label, Severity};
 use crate::figure::deviations;
@@ -109,9 +109,9 @@ fn supplies(budget: &Budget, circuit: &Circuit) -> Vec<(Option<NetId>, Option<Ne
         .map(|(stage, (positive, negative))| (stage, find(&positive.text), find(&negative.text)))
         .collect();
     let of = |op_amp: &circuit::OpAmp| {
-        let said = declared.iter().rfind(|(stage, ..)| {
-            stage.matches.iter().any(|pattern| matches(&pattern.text, &op_amp.name))
-        });
+        let said = declared
+            .iter()
+            .rfind(|(stage, ..)| stage.matches.iter().any(|pattern| matches(&pattern.text, &op_amp.name)));
         match said {
             Some((_, positive, negative)) => (*positive, *negative),
             None => (op_amp.positive, op_amp.negative),
@@ -195,20 +195,19 @@ fn undriven(circuit: &Circuit, layout: &Layout) -> Vec<Finding> {
         Finding {
             cure: Some(format!("budget: signals: {{ {}: {{ range: ... }} }}", names[0])),
             labels: labels.map(|span| Label { span, text: String::new() }).collect(),
-            ..plain("unjudged", Severity::Note, format!("nothing drives the network of {}: which net is the signal?", names.join(", ")))
+            ..plain(
+                "unjudged",
+                Severity::Note,
+                format!("nothing drives the network of {}: which net is the signal?", names.join(", ")),
+            )
         }
     };
     layout.undriven.iter().map(finding).collect()
 }
 
 fn plain(rule: &str, severity: Severity, message: String) -> Finding {
-    let mut finding = Finding::from(Diagnostic {
-        kind: "",
-        severity,
-        message,
-        labels: Vec::new(),
-        help: None,
-    });
+    let mut finding =
+        Finding::from(Diagnostic { kind: "", severity, message, labels: Vec::new(), help: None });
     finding.rule = rule.to_owned();
     finding
 }
@@ -235,7 +234,8 @@ fn verdict(report: &BoardReport, fail_on: Severity) -> Verdict {
         return Verdict::Fail;
     }
     let unknown = report.stages.iter().flat_map(|stage| &stage.figures);
-    let undecided = |figure: &crate::report::FigureReport| figure.stated && figure.status == crate::rule::Status::Unknown;
+    let undecided =
+        |figure: &crate::report::FigureReport| figure.stated && figure.status == crate::rule::Status::Unknown;
     if !report.coverage.skipped.is_empty() || unknown.into_iter().any(undecided) {
         return Verdict::Incomplete;
     }

@@ -223,7 +223,8 @@ fn yaml_files(path: &Path) -> Vec<PathBuf> {
     let is_yaml = |path: &PathBuf| {
         path.extension().is_some_and(|ending| ending == "yaml" || ending == "yml") && path.is_file()
     };
-    let mut paths: Vec<PathBuf> = entries.filter_map(|entry| Some(entry.ok()?.path())).filter(is_yaml).collect();
+    let mut paths: Vec<PathBuf> =
+        entries.filter_map(|entry| Some(entry.ok()?.path())).filter(is_yaml).collect();
     paths.sort();
     paths
 }

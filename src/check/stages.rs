@@ -55,7 +55,13 @@ fn groups(board: &Board, names: &[(Topology, Option<u32>)]) -> Vec<String> {
     members.into_iter().map(|ids| ids.join("+")).collect()
 }
 
-fn one(stage: &Stage, budget: &Budget, rules: &[Rule], topology: Topology, group: Option<String>) -> Judgement {
+fn one(
+    stage: &Stage,
+    budget: &Budget,
+    rules: &[Rule],
+    topology: Topology,
+    group: Option<String>,
+) -> Judgement {
     let part = stage.part();
     let asked: Vec<&StageBudget> = budget
         .stages
@@ -203,11 +209,13 @@ fn note(board: &Board, reason: &str, figures: &[&str], stages: &[u32]) -> Findin
     const NAMED: usize = 6;
     let names: Vec<&str> =
         stages.iter().take(NAMED).map(|at| board.circuit.op_amps[*at as usize].name.as_str()).collect();
-    let more = if NAMED < stages.len() { format!(" and {} more", stages.len() - NAMED) } else { String::new() };
+    let more =
+        if NAMED < stages.len() { format!(" and {} more", stages.len() - NAMED) } else { String::new() };
     let message = format!("{} of {}{more} can't be judged: {reason}", figures.join(", "), names.join(", "));
-    let spans = stages.iter().take(NAMED).filter_map(|at| {
-        board.circuit.element(board.circuit.op_amps[*at as usize].element).span
-    });
+    let spans = stages
+        .iter()
+        .take(NAMED)
+        .filter_map(|at| board.circuit.element(board.circuit.op_amps[*at as usize].element).span);
     let fault = Diagnostic {
         kind: "unjudged",
         severity: Severity::Note,
@@ -220,13 +228,17 @@ fn note(board: &Board, reason: &str, figures: &[&str], stages: &[u32]) -> Findin
 
 /// The line of budget that would tell what is missing.
 fn declaration(reason: &str) -> Option<String> {
-    if let Some(name) = reason.strip_prefix("the range of ").and_then(|rest| rest.strip_suffix(" is not declared")) {
+    if let Some(name) =
+        reason.strip_prefix("the range of ").and_then(|rest| rest.strip_suffix(" is not declared"))
+    {
         return Some(format!("budget: signals: {{ {name}: {{ range: 0 V .. 1 V }} }} with the true range"));
     }
     if reason.starts_with("the supplies of ") {
         return Some("budget: rails: { NET: 12 V +/- 5 % } for the nets on its supply pins".to_owned());
     }
-    reason.starts_with("the profile of ").then(|| "give the figure in a profile of your own, with --devices".to_owned())
+    reason
+        .starts_with("the profile of ")
+        .then(|| "give the figure in a profile of your own, with --devices".to_owned())
 }
 
 /// What was assumed because neither netlist nor budget says it, one sentence each.

@@ -2,7 +2,7 @@
 
 use crate::budget::Budget;
 use crate::circuit::identify::{Identity, Misfit, identify};
-use crate::circuit::scope::{Definitions, Fault, Parameters, model};
+use crate::circuit::scope::{Definitions, Fault, Parameters};
 use crate::circuit::values::{self, Passive};
 use crate::circuit::{Circuit, Element, ElementId, ElementKind, Net, NetId, OpAmp};
 use crate::device::{Catalogue, Pin};
@@ -172,11 +172,11 @@ impl<'a> Expander<'a> {
             if self.full {
                 return;
             }
-            self.statement(statement, scope, level);
+            self.statement(statement, level);
         }
     }
 
-    fn statement(&mut self, statement: &'a Statement, scope: &'a Scope, level: &Level) {
+    fn statement(&mut self, statement: &'a Statement, level: &Level) {
         let name = format!("{}{}", level.path, self.sources.text(statement.name));
         if self.budget.absent.iter().any(|absent| matches(&absent.text, &name)) {
             return;
@@ -196,14 +196,15 @@ impl<'a> Expander<'a> {
             Kind::Call { model, parameters } => {
                 return self.call(statement, name, nets, (*model, parameters), level);
             }
-            Kind::Resistor(stated) => {
-                values::resistor(self.part(&name, Passive::Resistor, stated, scope, level))
+            Kind::Resistor(stated) if nets.len() == 3 => {
+                return self.potentiometer(statement, name, &nets, stated, level);
             }
+            Kind::Resistor(stated) => values::resistor(self.part(&name, Passive::Resistor, stated, level)),
             Kind::Capacitor(stated) => {
-                ElementKind::Capacitor(self.part(&name, Passive::Capacitor, stated, scope, level))
+                ElementKind::Capacitor(self.part(&name, Passive::Capacitor, stated, level))
             }
             Kind::Inductor(stated) => {
-                ElementKind::Inductor(self.part(&name, Passive::Inductor, stated, scope, level))
+                ElementKind::Inductor(self.part(&name, Passive::Inductor, stated, level))
             }
             Kind::VoltageSource(waveform) => ElementKind::VoltageSource(self.drive(waveform, level)),
             Kind::CurrentSource(waveform) => ElementKind::CurrentSource(self.drive(waveform, level)),
@@ -230,34 +231,33 @@ impl<'a> Expander<'a> {
         values::drive(dc, waveform.span, moves)
     }
 
-    /// A passive's value: its own, times what a model of it says.
-    fn part(
+    /// Two resistors at half travel; the second node is the wiper.
+    fn potentiometer(
         &mut self,
-        name: &str,
-        passive: Passive,
+        statement: &Statement,
+        name: String,
+        nets: &[NetId],
         stated: &Stated,
-        scope: &'a Scope,
         level: &Level,
-    ) -> crate::circuit::Part {
-        let mut value =
-            stated.value.and_then(|value| self.value(value, level)).filter(|value| value.is_finite());
-        let mut tolerance = stated.tolerance;
-        let named =
-            stated.model.and_then(|word| model(self.sources, self.netlist, scope, self.sources.text(word)));
-        for assignment in named.map_or(&[][..], |model| &model.parameters) {
-            let key = self.sources.text(assignment.name);
-            let letter = ["r", "c", "l"][passive as usize];
-            if key.eq_ignore_ascii_case(letter) {
-                let factor = level.parameters.evaluate(self.sources, assignment.value).ok();
-                value = value.zip(factor).map(|(value, factor)| value * factor);
-            } else if key.eq_ignore_ascii_case("dev") && tolerance.is_none() {
-                tolerance = percentage(self.sources.text(assignment.value));
-            }
+    ) {
+        let whole = self.part(&name, Passive::Resistor, stated, level);
+        let half = crate::circuit::Part { value: whole.value.map(|ohms| ohms / 2.0), ..whole };
+        for (ends, part) in [([nets[0], nets[1]], "upper"), ([nets[1], nets[2]], "lower")] {
+            self.add_element(Element {
+                name: format!("{name}:{part}"),
+                nets: ends.as_slice().into(),
+                kind: values::resistor(half),
+                span: Some(statement.span),
+            });
         }
-        if passive != Passive::Resistor {
-            value = value.filter(|value| 0.0 < *value);
-        }
-        values::part(self.budget, &self.catalogue.assumed, name, passive, value, (tolerance, stated.rating))
+    }
+
+    /// A passive's value, tolerance and rating; the reader has put in what a model of it says.
+    fn part(&mut self, name: &str, passive: Passive, stated: &Stated, level: &Level) -> crate::circuit::Part {
+        let value = stated.value.and_then(|value| self.value(value, level)).filter(|value| value.is_finite());
+        let sound = value.filter(|value| passive == Passive::Resistor || 0.0 < *value);
+        let limits = (stated.tolerance, stated.rating);
+        values::part(self.budget, &self.catalogue.assumed, name, passive, sound, limits)
     }
 
     fn call(
@@ -462,10 +462,4 @@ impl<'a> Expander<'a> {
         let inner = Level { path: &path, ports, definition: Some(index), parameters, depth: level.depth + 1 };
         self.scope(&definition.body, &inner);
     }
-}
-
-/// `0.1%` or `0.001` as a share.
-fn percentage(text: &str) -> Option<f64> {
-    let (number, scale) = text.strip_suffix('%').map_or((text, 1.0), |number| (number, 0.01));
-    number.trim().parse::<f64>().ok().map(|value| value * scale).filter(|value| (0.0..1.0).contains(value))
 }

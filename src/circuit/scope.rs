@@ -1,6 +1,6 @@
 //! Parameters and definitions that a level of the netlist can see.
 
-use crate::netlist::{Assignment, Model, Netlist, Scope, Value, evaluate};
+use crate::netlist::{Assignment, Netlist, Value, evaluate};
 use crate::source::{Sources, Span};
 use rustc_hash::FxHashMap;
 
@@ -90,15 +90,4 @@ impl Definitions {
             level = netlist.subcircuits[level?].parent;
         }
     }
-}
-
-/// The `.model` of a name at a level or at the top.
-pub(super) fn model<'n>(
-    sources: &Sources,
-    netlist: &'n Netlist,
-    scope: &'n Scope,
-    name: &str,
-) -> Option<&'n Model> {
-    let named = |model: &&Model| sources.text(model.name).eq_ignore_ascii_case(name);
-    scope.models.iter().find(named).or_else(|| netlist.top.models.iter().find(named))
 }

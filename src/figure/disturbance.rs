@@ -43,7 +43,8 @@ impl Stage<'_> {
         for (amp, op_amp) in model.op_amps.iter().enumerate() {
             let Some(op_amp) = *op_amp else { continue };
             let stage = Stage { op_amp, ..*self };
-            let bias = stage.input_current(Key::BiasCurrent).ok_or_else(|| stage.missing(Key::BiasCurrent))?;
+            let bias =
+                stage.input_current(Key::BiasCurrent).ok_or_else(|| stage.missing(Key::BiasCurrent))?;
             let stamp = model.network.amps[amp];
             let into = |plus: f64, minus: f64| Effect {
                 injections: smallvec![(stamp.plus, -plus), (stamp.minus, -minus)],
@@ -113,7 +114,13 @@ impl Stage<'_> {
         if 0.0 < away && !offset.covered {
             let drift = self.spread(Key::OffsetDrift, 0.0).ok_or_else(|| self.missing(Key::OffsetDrift))?;
             let effect = series(away);
-            extras.push(Extra::symmetric(effect, item("offset drift"), drift.nominal, drift.high, drift.rank));
+            extras.push(Extra::symmetric(
+                effect,
+                item("offset drift"),
+                drift.nominal,
+                drift.high,
+                drift.rank,
+            ));
         }
         let Some(supply) = self.device().supply else {
             return Err(format!("the supplies of {} are not known", self.part().name));
@@ -124,7 +131,13 @@ impl Stage<'_> {
             let rejection = self.spread(key, 0.0).ok_or_else(|| self.missing(key))?;
             let rank = rejection.rank.max(supply.rank);
             let (usual, least) = (from_decibel(rejection.nominal), from_decibel(rejection.low));
-            extras.push(Extra::symmetric(series(away), item("common-mode rejection"), 1.0 / usual, 1.0 / least, rank));
+            extras.push(Extra::symmetric(
+                series(away),
+                item("common-mode rejection"),
+                1.0 / usual,
+                1.0 / least,
+                rank,
+            ));
         }
         let deviation = supply.deviation.0 + supply.deviation.1;
         if 0.0 < deviation {
@@ -132,7 +145,13 @@ impl Stage<'_> {
             let rejection = self.spread(key, 0.0).ok_or_else(|| self.missing(key))?;
             let rank = rejection.rank.max(supply.deviation_rank);
             let (usual, least) = (from_decibel(rejection.nominal), from_decibel(rejection.low));
-            extras.push(Extra::symmetric(series(deviation), item("supply rejection"), 1.0 / usual, 1.0 / least, rank));
+            extras.push(Extra::symmetric(
+                series(deviation),
+                item("supply rejection"),
+                1.0 / usual,
+                1.0 / least,
+                rank,
+            ));
         }
         Ok(())
     }

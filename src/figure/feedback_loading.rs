@@ -51,7 +51,8 @@ pub(super) fn compute(stage: &Stage, from: Option<Main>) -> Figure {
 }
 
 fn share(stage: &Stage, from: Option<Main>) -> Result<Figure, String> {
-    let rated = rated(stage).ok_or_else(|| format!("the profile of {} gives no output current", stage.part().name))?;
+    let rated = rated(stage)
+        .ok_or_else(|| format!("the profile of {} gives no output current", stage.part().name))?;
     let current = |sign: f64, excitation: Excitation<f64>| Linear {
         model: stage.model(),
         reading: smallvec![],
@@ -71,12 +72,19 @@ fn share(stage: &Stage, from: Option<Main>) -> Result<Figure, String> {
         }
         Err(name) => {
             let missing = || format!("the range of {name} is not declared");
-            let (excitation, sign) = full_swing(stage, from, &current(1.0, Excitation::none())).ok_or_else(missing)?;
+            let (excitation, sign) =
+                full_swing(stage, from, &current(1.0, Excitation::none())).ok_or_else(missing)?;
             (excitation, sign, true)
         }
     };
     let mut axes = axes(stage.model(), false);
-    axes.push(Axis { base: rated.nominal, nominal: rated.nominal, low: rated.low, high: rated.nominal, rank: rated.rank });
+    axes.push(Axis {
+        base: rated.nominal,
+        nominal: rated.nominal,
+        low: rated.low,
+        high: rated.nominal,
+        rank: rated.rank,
+    });
     let quantity = Share { current: current(sign, excitation) };
     let found = study(&quantity, &axes, Bad::High)
         .ok_or_else(|| "its equations have no solution at the worst corner".to_owned())?;

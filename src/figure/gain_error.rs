@@ -47,7 +47,9 @@ impl Quantity for GainError<'_> {
         };
         let mut ideal_gradient = vec![0.0; gradient.len()];
         let ideal = slope(&twin, &mut ideal_gradient);
-        for ((slope, ideal_slope), parameter) in gradient.iter_mut().zip(&ideal_gradient).zip(&model.parameters) {
+        for ((slope, ideal_slope), parameter) in
+            gradient.iter_mut().zip(&ideal_gradient).zip(&model.parameters)
+        {
             // The twin has no op-amp parameters; only what both share moves its transfer.
             let shared = matches!(parameter.what, crate::solve::What::Resistors(_));
             let twin_slope = if shared { *ideal_slope } else { 0.0 };

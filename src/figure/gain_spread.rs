@@ -30,8 +30,7 @@ struct Spread<'s> {
 impl Quantity for Spread<'_> {
     fn at(&self, point: &[f64], gradient: &mut [f64]) -> Option<f64> {
         let model = self.stage.model();
-        let solved =
-            Solved::new(&model.network, values_at(&model.nominal, &model.parameters, point)).ok()?;
+        let solved = Solved::new(&model.network, values_at(&model.nominal, &model.parameters, point)).ok()?;
         let weights = solved.adjoint(&[(self.stage.output(), 1.0)]);
         let state = solved.forward(&self.stage.unit(self.from));
         along(&model.parameters, solved.values(), &solved.sensitivity(&state, &weights), gradient);
@@ -55,7 +54,9 @@ pub(super) fn compute(stage: &Stage, from: Option<Main>) -> Figure {
     let Ok(solved) = Solved::new(&model.network, model.nominal.clone()) else { return unknown() };
     let nominal = stage.transfer(&solved, &solved.adjoint(&[(stage.output(), 1.0)]), from);
     match study(&Spread { stage: *stage, from, nominal }, &axes, Bad::Either) {
-        Some(found) => Figure { nominal: None, ..stage.figure_of(Kind::GainSpread, &axes, &found, &[], true) },
+        Some(found) => {
+            Figure { nominal: None, ..stage.figure_of(Kind::GainSpread, &axes, &found, &[], true) }
+        }
         None => unknown(),
     }
 }

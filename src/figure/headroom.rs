@@ -41,7 +41,8 @@ impl<'b> Stage<'b> {
         let mut gradient = vec![0.0; axes.len()];
         linear.at(&point, &mut gradient);
         let own = self.model().parameters.len();
-        let typical = gradient[own..].iter().zip(&extras).map(|(slope, extra)| slope.abs() * extra.typical).sum();
+        let typical =
+            gradient[own..].iter().zip(&extras).map(|(slope, extra)| slope.abs() * extra.typical).sum();
         Figure { nominal: Some(typical), ..self.figure_of(kind, &axes, &found, &items, true) }
     }
 
@@ -91,9 +92,16 @@ impl<'b> Stage<'b> {
         let kept = self.spread(key, current).ok_or_else(|| self.missing(key))?;
         let sign = if bound.high { -1.0 } else { 1.0 };
         extras.extend(self.rail_extras(bound.net.map(|net| (net, -sign))));
-        let mut kept_axis = Extra::symmetric(Default::default(), Item::OpAmp(self.op_amp, key.name()), 0.0, 0.0, kept.rank);
+        let mut kept_axis =
+            Extra::symmetric(Default::default(), Item::OpAmp(self.op_amp, key.name()), 0.0, 0.0, kept.rank);
         kept_axis.effect.direct = -1.0;
-        kept_axis.axis = Axis { base: kept.nominal, nominal: kept.nominal, low: kept.low, high: kept.high, rank: kept.rank };
+        kept_axis.axis = Axis {
+            base: kept.nominal,
+            nominal: kept.nominal,
+            low: kept.low,
+            high: kept.high,
+            rank: kept.rank,
+        };
         extras.push(kept_axis);
         let linear = self.reading(node, sign, -sign * bound.rail, excitation, &extras);
         let (axes, items) = with_axes(axes(self.model(), false), &extras);

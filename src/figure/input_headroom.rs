@@ -31,7 +31,8 @@ pub(super) fn compute(stage: &Stage, drive: &Drive) -> Figure {
 }
 
 fn distances(stage: &Stage, drive: &Drive) -> Result<Figure, String> {
-    let bounds = stage.bounds().ok_or_else(|| format!("the supplies of {} are not known", stage.part().name))?;
+    let bounds =
+        stage.bounds().ok_or_else(|| format!("the supplies of {} are not known", stage.part().name))?;
     let mut own = stage.bias_currents()?;
     own.extend(stage.offsets(&drive.rest)?);
     own.extend(stage.upstream());

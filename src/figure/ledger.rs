@@ -78,7 +78,9 @@ impl Stage<'_> {
             What::Differential(amp) => op_amp(*amp, "input resistance"),
             What::Common(amp) => op_amp(*amp, "common-mode resistance"),
             What::Output(amp) => op_amp(*amp, "output resistance"),
-            What::Resistors(branches) if branches.len() == 1 => Item::Resistor(model.elements[branches[0] as usize]),
+            What::Resistors(branches) if branches.len() == 1 => {
+                Item::Resistor(model.elements[branches[0] as usize])
+            }
             What::Resistors(branches) => Item::Group(model.elements[branches[0] as usize]),
         }
     }

@@ -134,8 +134,10 @@ impl Quantity for Linear<'_> {
         };
         let mut value = self.constant + self.sign * read(&coefficients, &state);
         for ((effect, at), slope) in self.extras.iter().zip(extras).zip(&mut gradient[parameters.len()..]) {
-            let currents: f64 = effect.injections.iter().map(|(node, amps)| weights.current(*node) * amps).sum();
-            let errors: f64 = effect.errors.iter().map(|(member, volts)| weights.error[*member] * volts).sum();
+            let currents: f64 =
+                effect.injections.iter().map(|(node, amps)| weights.current(*node) * amps).sum();
+            let errors: f64 =
+                effect.errors.iter().map(|(member, volts)| weights.error[*member] * volts).sum();
             let held: f64 =
                 effect.ports.iter().map(|(port, volts)| (ports[*port] + direct_port(*port)) * volts).sum();
             *slope = self.sign * (currents + errors + held) + effect.direct;

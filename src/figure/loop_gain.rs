@@ -28,8 +28,7 @@ struct LoopGain<'s> {
 impl LoopGain<'_> {
     fn signed(&self, point: &[f64], gradient: &mut [f64]) -> Option<f64> {
         let model = self.stage.model();
-        let solved =
-            Solved::new(&model.network, values_at(&model.nominal, &model.parameters, point)).ok()?;
+        let solved = Solved::new(&model.network, values_at(&model.nominal, &model.parameters, point)).ok()?;
         let (plus, minus) = self.stage.inputs();
         let weights = solved.adjoint(&[(plus, 1.0), (minus, -1.0)]);
         let mut errors = vec![0.0; model.network.members];
@@ -61,10 +60,9 @@ pub(super) fn compute(stage: &Stage) -> Figure {
     let nominal: Vec<f64> = axes.iter().map(|axis| axis.nominal).collect();
     let sign = quantity.signed(&nominal, &mut vec![0.0; axes.len()]);
     match (study(&quantity, &axes, Bad::Low), sign) {
-        (Some(found), Some(sign)) => Figure {
-            sign: Some(sign.signum()),
-            ..stage.figure_of(Kind::LoopGain, &axes, &found, &[], false)
-        },
+        (Some(found), Some(sign)) => {
+            Figure { sign: Some(sign.signum()), ..stage.figure_of(Kind::LoopGain, &axes, &found, &[], false) }
+        }
         _ => Figure::unknown(Kind::LoopGain, "its equations have no solution at the worst corner"),
     }
 }

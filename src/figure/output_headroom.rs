@@ -25,7 +25,8 @@ pub(super) fn compute(stage: &Stage, drive: &Drive) -> Figure {
 }
 
 fn distances(stage: &Stage, drive: &Drive) -> Result<Figure, String> {
-    let bounds = stage.bounds().ok_or_else(|| format!("the supplies of {} are not known", stage.part().name))?;
+    let bounds =
+        stage.bounds().ok_or_else(|| format!("the supplies of {} are not known", stage.part().name))?;
     let ends = drive.ends.as_ref().map_err(|name| format!("the range of {name} is not declared"))?;
     let model = stage.model();
     let solved = Solved::new(&model.network, model.nominal.clone());

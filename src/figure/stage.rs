@@ -179,7 +179,8 @@ impl<'b> Stage<'b> {
             return Review { transfers, main, pins: Vec::new(), span: None, figures };
         }
         let drive = Drive::of(self);
-        let figures = Kind::ALL.iter().map(|kind| self.figure(*kind, &transfers, main, &drive, requirement)).collect();
+        let figures =
+            Kind::ALL.iter().map(|kind| self.figure(*kind, &transfers, main, &drive, requirement)).collect();
         Review { transfers, main, pins: drive.pins(self), span: drive.span(self), figures }
     }
 
@@ -215,12 +216,16 @@ impl<'b> Stage<'b> {
         let model = self.model();
         let Some(twin) = self.twin(&model.nominal) else { return Vec::new() };
         let ideal = twin.adjoint(&[(self.output(), 1.0)]);
-        let known = !matches!(model.fault, Some(Fault::UnknownDevice(_) | Fault::NoGain(_) | Fault::Regenerative));
+        let known =
+            !matches!(model.fault, Some(Fault::UnknownDevice(_) | Fault::NoGain(_) | Fault::Regenerative));
         let real = Solved::new(&model.network, model.nominal.clone()).ok().filter(|_| known);
         let weights = real.as_ref().map(|real| real.adjoint(&[(self.output(), 1.0)]));
         let make = |input: Input| Transfer {
             ideal: self.transfer(&twin, &ideal, input.from),
-            actual: real.as_ref().zip(weights.as_ref()).map(|(real, weights)| self.transfer(real, weights, input.from)),
+            actual: real
+                .as_ref()
+                .zip(weights.as_ref())
+                .map(|(real, weights)| self.transfer(real, weights, input.from)),
             input,
         };
         let transfers = self.all_inputs().into_iter().map(make);
@@ -245,7 +250,11 @@ impl<'b> Stage<'b> {
             for (at, (port, level)) in ports.iter().zip(&levels).enumerate() {
                 let signal = 0 < *level && Some(*level) == best;
                 if port.input && signal == wanted {
-                    inputs.push(Input { from: Main::Port(at), name: circuit.net(port.net).name.clone(), signal });
+                    inputs.push(Input {
+                        from: Main::Port(at),
+                        name: circuit.net(port.net).name.clone(),
+                        signal,
+                    });
                 }
             }
             if wanted {
@@ -294,10 +303,14 @@ pub fn explain(circuit: &Circuit, layout: &Layout, fault: &Fault) -> String {
             format!("no transfer at DC: nothing closes the loop from {}", net(at))
         }
         Fault::NoTwin(_) => "no transfer at DC: no feedback path conducts".to_owned(),
-        Fault::OutsideLoop(at) => format!("its loop closes through {}, which is not modelled", circuit.element(*at).name),
+        Fault::OutsideLoop(at) => {
+            format!("its loop closes through {}, which is not modelled", circuit.element(*at).name)
+        }
         Fault::NonLinear(at) => format!("{} makes it non-linear by intent", circuit.element(*at).name),
         Fault::OpenLoop => "no network closes its loop: a comparator, or feedback is missing".to_owned(),
-        Fault::Regenerative => "the DC feedback regenerates: the inputs are exchanged, or it is a switching stage".to_owned(),
+        Fault::Regenerative => {
+            "the DC feedback regenerates: the inputs are exchanged, or it is a switching stage".to_owned()
+        }
     }
 }
 

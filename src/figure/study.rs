@@ -81,7 +81,12 @@ pub(super) fn study(quantity: &dyn Quantity, axes: &[Axis], bad: Bad) -> Option<
 }
 
 /// The corner that the signs of a gradient give in one direction, read again where signs turn there.
-fn corner(quantity: &dyn Quantity, axes: &[Axis], gradient: &[f64], direction: f64) -> Option<(f64, Vec<f64>)> {
+fn corner(
+    quantity: &dyn Quantity,
+    axes: &[Axis],
+    gradient: &[f64],
+    direction: f64,
+) -> Option<(f64, Vec<f64>)> {
     let mut gradient = gradient.to_vec();
     let mut best: Option<(f64, Vec<f64>)> = None;
     for _ in 0..REREADS {

@@ -109,6 +109,9 @@ mod tests {
     fn keeps_the_end_of_a_path() {
         assert_eq!(short_path("a/board.cir", 11), "a/board.cir");
         assert_eq!(short_path("long/a/board.cir", 11), "…/board.cir");
-        assert_eq!(short_path(&"x/".repeat(100_000), 5), "…/x/x/".chars().take(1).chain("x/x/".chars()).collect::<String>());
+        assert_eq!(
+            short_path(&"x/".repeat(100_000), 5),
+            "…/x/x/".chars().take(1).chain("x/x/".chars()).collect::<String>()
+        );
     }
 }

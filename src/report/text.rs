@@ -57,7 +57,9 @@ fn write_basis(paper: &mut Paper, board: &BoardReport) {
     paper.blank();
     match &board.budget {
         Some(path) => paper.paragraph("judged by ", "  ", path),
-        None => paper.paragraph("", "", "no budget: signals, rails and limits are those assumed for any board"),
+        None => {
+            paper.paragraph("", "", "no budget: signals, rails and limits are those assumed for any board")
+        }
     }
     if board.assumed.is_empty() {
         return;

@@ -103,7 +103,8 @@ pub fn judge(rules: &[Rule], subject: &Subject, figure: &Figure) -> Judged {
     };
     judged.limit = limit;
     let Some(worst) = figure.worst else { return judged };
-    let guard = rule.and_then(|rule| rule.guard).filter(|_| stated.is_none()).and_then(|guard| resolve(guard).ok());
+    let guard =
+        rule.and_then(|rule| rule.guard).filter(|_| stated.is_none()).and_then(|guard| resolve(guard).ok());
     let guard = guard.map(|(guard, _)| guard);
     judged.data = judged.data.max(data_rank(figure, limit, guard));
     let Some(limit) = limit else {
@@ -221,7 +222,10 @@ fn finding(
         value: Some(value),
         limit: Some(limit),
         unit: Some(doc.unit),
-        message: format!("{}{space}{topology}: {} is {number} {case}, {verdict}{assumed}", subject.id, doc.title),
+        message: format!(
+            "{}{space}{topology}: {} is {number} {case}, {verdict}{assumed}",
+            subject.id, doc.title
+        ),
         cure: Some(cure(subject, figure, worst, limit, data)),
         waived: None,
         labels: labels(subject, figure),
@@ -245,7 +249,11 @@ fn cure(subject: &Subject, figure: &Figure, worst: f64, limit: f64, data: Rank) 
         text = format!("{name} makes {} of it; ", percent(share));
         if 0.0 < short && short < line.effect.abs() {
             let factor = line.effect.abs() / (line.effect.abs() - short);
-            text = format!("{name} makes {} of it and must act {} times less; ", percent(share), show(factor, Unit::One));
+            text = format!(
+                "{name} makes {} of it and must act {} times less; ",
+                percent(share),
+                show(factor, Unit::One)
+            );
         }
     }
     text.push_str(doc.cure);
@@ -266,14 +274,17 @@ fn pushes(figure: &Figure, effect: f64, worst: f64) -> bool {
 
 /// The one declaration that would decide a verdict on assumed data.
 fn deciding(subject: &Subject, figure: &Figure) -> String {
-    let assumed = figure.ledger.iter().filter(|line| line.rank == Rank::Assumed && line.item != Item::Nominal);
+    let assumed =
+        figure.ledger.iter().filter(|line| line.rank == Rank::Assumed && line.item != Item::Nominal);
     let largest = assumed.max_by(|a, b| a.effect.abs().total_cmp(&b.effect.abs()));
     match largest.map(|line| line.item) {
         _ if figure.bound => "the range of its signals".to_owned(),
         Some(Item::Rail(net)) => format!("the tolerance of rail {}", subject.circuit.net(net).name),
         Some(Item::Resistor(_) | Item::Group(_)) => "the tolerance of its resistors".to_owned(),
         Some(Item::OpAmp(at, what)) => format!("{what} of {}", subject.circuit.op_amps[at as usize].name),
-        Some(Item::Upstream(net)) => format!("what is assumed of the stage that drives {}", subject.circuit.net(net).name),
+        Some(Item::Upstream(net)) => {
+            format!("what is assumed of the stage that drives {}", subject.circuit.net(net).name)
+        }
         _ => "rails and ranges".to_owned(),
     }
 }

@@ -11,8 +11,8 @@ use crate::report::harmless::short_path;
 use crate::source::{FileId, Sources};
 use copy::{Chunk, Mark, chunks};
 use miette::{
-    Diagnostic, GraphicalReportHandler, GraphicalTheme, LabeledSpan, MietteError, MietteSpanContents, SourceCode,
-    SourceSpan, SpanContents, ThemeCharacters, ThemeStyles,
+    Diagnostic, GraphicalReportHandler, GraphicalTheme, LabeledSpan, MietteError, MietteSpanContents,
+    SourceCode, SourceSpan, SpanContents, ThemeCharacters, ThemeStyles,
 };
 
 /// Most places of one finding that are drawn.
@@ -90,7 +90,8 @@ fn excerpt(labels: &[&Label], sources: &Sources, width: usize) -> Excerpt {
     let place = labels.first().map_or(String::new(), |label| place(label, sources, width));
     let file = labels.first().map_or("", |label| sources.file(label.span.file).text.as_str());
     let (chunks, spans) = chunks(file, marks, room);
-    let labels = spans.into_iter().map(|span| LabeledSpan::new(beside(&span, room), span.offset, span.length));
+    let labels =
+        spans.into_iter().map(|span| LabeledSpan::new(beside(&span, room), span.offset, span.length));
     Excerpt { place, labels: labels.collect(), chunks }
 }
 

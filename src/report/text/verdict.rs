@@ -21,8 +21,12 @@ pub(super) fn write(paper: &mut Paper, report: &Report) {
 /// One line over all boards.
 fn write_run(paper: &mut Paper, report: &Report) {
     let with = |verdict| report.boards.iter().filter(|board| board.verdict == verdict).count();
-    let counts = [(Verdict::Fail, "fail"), (Verdict::Incomplete, "incomplete"), (Verdict::WithinBudget, "within budget")]
-        .map(|(verdict, words)| format!("{} {words}", with(verdict)));
+    let counts = [
+        (Verdict::Fail, "fail"),
+        (Verdict::Incomplete, "incomplete"),
+        (Verdict::WithinBudget, "within budget"),
+    ]
+    .map(|(verdict, words)| format!("{} {words}", with(verdict)));
     paper.paragraph("", "", &format!("{}: {}", count(report.boards.len(), "board"), counts.join(", ")));
 }
 
@@ -44,7 +48,11 @@ fn sentence(board: &BoardReport, room: usize) -> String {
 /// `2 errors, 1 warning, 3 notes, 1 waived`, without what there is none of.
 fn found(board: &BoardReport) -> String {
     let open = |severity| {
-        board.findings.iter().filter(|finding| finding.waived.is_none() && finding.severity == severity).count()
+        board
+            .findings
+            .iter()
+            .filter(|finding| finding.waived.is_none() && finding.severity == severity)
+            .count()
     };
     let waived = board.findings.iter().filter(|finding| finding.waived.is_some()).count();
     let mut parts: Vec<String> = [Severity::Error, Severity::Warning, Severity::Note]

@@ -125,7 +125,8 @@ impl Copy {
         if whole.places.last().is_some_and(|(at, _)| needed <= *at) {
             return whole;
         }
-        let before = file[begin..first].char_indices().rev().nth(BEFORE - 1).map_or(begin, |(at, _)| begin + at);
+        let before =
+            file[begin..first].char_indices().rev().nth(BEFORE - 1).map_or(begin, |(at, _)| begin + at);
         Copy::from(file, before, end, room)
     }
 
