@@ -9,7 +9,8 @@ use crate::figure::{
     bias_error, feedback_loading, gain_error, gain_spread, input_headroom, loop_gain, offset_error,
     output_headroom,
 };
-use crate::solve::{Board, Device, Excitation, Fault, Model, Node, Solved, Values, Weights};
+use crate::solve::{Board, Device, Excitation, Fault, List, Model, Node, Solved, Values, Weights};
+use smallvec::smallvec;
 
 /// What the budget asks of a stage.
 #[derive(Debug, Clone, Default, PartialEq)]
@@ -153,14 +154,14 @@ impl<'b> Stage<'b> {
         match from {
             Main::Port(port) => Excitation::port(ports, port),
             Main::Pair(_, positive, negative) => {
-                let mut excitation = Excitation { ports: vec![0.0; ports], ..Excitation::none() };
+                let mut excitation = Excitation { ports: List::from_elem(0.0, ports), ..Excitation::none() };
                 excitation.ports[positive] = 0.5;
                 excitation.ports[negative] = -0.5;
                 excitation
             }
             Main::Current(at) => {
                 let (into, out_of) = self.current(at);
-                Excitation { injections: vec![(into, 1.0), (out_of, -1.0)], ..Excitation::none() }
+                Excitation { injections: smallvec![(into, 1.0), (out_of, -1.0)], ..Excitation::none() }
             }
         }
     }

@@ -6,7 +6,7 @@ use crate::circuit::{Circuit, NetId, Tie};
 use crate::device::{Catalogue, Rank};
 use crate::solve::device::{Device, Supply};
 use crate::solve::model::{Fault, Model};
-use crate::solve::{Excitation, LoadStamp, Node, Solved, regenerates};
+use crate::solve::{Excitation, List, LoadStamp, Node, Solved, regenerates};
 use rustc_hash::FxHashMap;
 
 /// Rows are swept forward until none moves by more than this share of its largest entry.
@@ -392,7 +392,7 @@ impl<'a> Board<'a> {
 
 /// Transfers of a block's outputs from its ports, its currents, and its constant part.
 struct Step {
-    outputs: Vec<(Vec<f64>, Vec<f64>, f64)>,
+    outputs: Vec<(List<f64>, List<f64>, f64)>,
     looks_ahead: bool,
 }
 
