@@ -4,6 +4,7 @@
 //! read right is a [`Diagnostic`](crate::diagnostic::Diagnostic); the rest of the board stands.
 
 mod apply;
+mod calls;
 mod declare;
 mod expand;
 mod trace;

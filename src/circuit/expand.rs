@@ -1,6 +1,7 @@
 //! Subcircuits expanded into one flat list of nets and elements.
 
 use crate::budget::Budget;
+use crate::circuit::calls::{Call, calls};
 use crate::circuit::identify::{Identity, Misfit, identify};
 use crate::circuit::scope::{Definitions, Fault, Parameters};
 use crate::circuit::values::{self, Passive};
@@ -8,14 +9,17 @@ use crate::circuit::{Circuit, Element, ElementId, ElementKind, Net, NetId, OpAmp
 use crate::device::{Catalogue, Pin};
 use crate::diagnostic::{Diagnostic, Severity};
 use crate::netlist::{Assignment, Kind, Netlist, Passive as Stated, Scope, Statement, Value, Waveform};
-use crate::source::{Sources, Span, matches};
+use crate::source::{Sources, Span, matches, quote};
 use rustc_hash::FxHashMap;
 use smallvec::SmallVec;
 
 /// Calls may nest this deep.
 const DEPTH: usize = 40;
-/// A board may have this many elements once its subcircuits are expanded.
-const ELEMENTS: usize = 2_000_000;
+/// The names before a name may be this long together, in bytes.
+const LONGEST_PATH: usize = 1_000;
+/// All subcircuits of a board may stand for this many elements once they are expanded. What stands at the
+/// top is bounded by what is read.
+const OPENED: u64 = 200_000;
 
 /// Expands a netlist while nets and elements are collected.
 pub(super) struct Expander<'a> {
@@ -31,7 +35,9 @@ pub(super) struct Expander<'a> {
     pub(super) joined: Vec<NetId>,
     known: FxHashMap<String, Option<Identity>>,
     buffer: String,
-    full: bool,
+    calls: Vec<Call>,
+    /// Elements that calls at the top stand for.
+    opened: u64,
 }
 
 /// One level while it is expanded: where its names lead.
@@ -53,19 +59,22 @@ impl<'a> Expander<'a> {
         budget: &'a Budget,
         catalogue: &'a Catalogue,
     ) -> Self {
+        let definitions = Definitions::of(sources, netlist);
+        let (calls, faults) = calls(sources, netlist, &definitions, budget, catalogue);
         let mut expander = Expander {
             sources,
             netlist,
             budget,
             catalogue,
-            definitions: Definitions::of(sources, netlist),
+            definitions,
             circuit: Circuit::default(),
-            faults: Vec::new(),
+            faults,
             names: FxHashMap::default(),
             joined: Vec::new(),
             known: FxHashMap::default(),
             buffer: String::new(),
-            full: false,
+            calls,
+            opened: 0,
         };
         let ground = expander.add_net("0".to_owned(), None);
         expander.circuit.nets[0].ground = true;
@@ -168,27 +177,12 @@ impl<'a> Expander<'a> {
     }
 
     fn scope(&mut self, scope: &'a Scope, level: &Level) {
-        for statement in &scope.elements {
-            if self.full {
-                return;
-            }
-            self.statement(statement, level);
-        }
+        scope.elements.iter().for_each(|statement| self.statement(statement, level));
     }
 
     fn statement(&mut self, statement: &'a Statement, level: &Level) {
         let name = format!("{}{}", level.path, self.sources.text(statement.name));
         if self.budget.absent.iter().any(|absent| matches(&absent.text, &name)) {
-            return;
-        }
-        if self.circuit.elements.len() >= ELEMENTS {
-            self.full = true;
-            self.faults.push(Diagnostic::at(
-                "too-large",
-                Severity::Error,
-                statement.span,
-                format!("the board has more than {ELEMENTS} elements once its subcircuits are expanded; the rest isn't read"),
-            ));
             return;
         }
         let nets: SmallVec<[NetId; 4]> = statement.nodes.iter().map(|word| self.net(*word, level)).collect();
@@ -273,29 +267,22 @@ impl<'a> Expander<'a> {
         match self.identity(&name, text, nets.len(), found) {
             Ok(Some(identity)) => self.op_amp(statement, name, text, &nets, identity),
             Ok(None) => match found {
-                Some(index) if self.opens(index, 0) => {
+                Some(index) if self.calls[index].opens => {
                     self.open(statement, name, nets, parameters, index, level)
                 }
-                _ => {
-                    self.add_element(Element {
-                        name,
-                        nets,
-                        kind: ElementKind::Unmodelled,
-                        span: Some(statement.span),
-                    });
-                }
+                _ => self.unmodelled(statement, name, nets),
             },
             Err(misfit) => {
                 let fault = self.misfit(statement, model, &name, misfit);
                 self.faults.push(fault);
-                self.add_element(Element {
-                    name,
-                    nets,
-                    kind: ElementKind::Unmodelled,
-                    span: Some(statement.span),
-                });
+                self.unmodelled(statement, name, nets);
             }
         }
+    }
+
+    fn unmodelled(&mut self, statement: &Statement, name: String, nets: SmallVec<[NetId; 4]>) {
+        let span = Some(statement.span);
+        self.add_element(Element { name, nets, kind: ElementKind::Unmodelled, span });
     }
 
     /// What a call is; the answer for a model name with a count of nodes is remembered where no
@@ -388,37 +375,6 @@ impl<'a> Expander<'a> {
         });
     }
 
-    /// Whether a definition is opened: it calls an op amp, or holds linear elements alone.
-    fn opens(&self, index: usize, depth: usize) -> bool {
-        if depth > DEPTH {
-            return true;
-        }
-        let body = &self.netlist.subcircuits[index].body;
-        let mut linear = true;
-        for statement in &body.elements {
-            match &statement.kind {
-                Kind::Resistor(_)
-                | Kind::Capacitor(_)
-                | Kind::Inductor(_)
-                | Kind::VoltageSource(_)
-                | Kind::CurrentSource(_)
-                | Kind::VoltageGain(_) => {}
-                Kind::Call { model, .. } => {
-                    let name = self.sources.text(*model);
-                    let op_amp = self.catalogue.find(name).is_some()
-                        || self.budget.devices.iter().any(|choice| matches(&choice.name.text, name));
-                    let inner = self.definitions.find(self.netlist, Some(index), name);
-                    if op_amp || inner.is_some_and(|inner| self.opens(inner, depth + 1)) {
-                        return true;
-                    }
-                    linear = false;
-                }
-                _ => linear = false,
-            }
-        }
-        linear
-    }
-
     fn open(
         &mut self,
         statement: &'a Statement,
@@ -429,26 +385,27 @@ impl<'a> Expander<'a> {
         level: &Level,
     ) {
         let definition = &self.netlist.subcircuits[index];
-        let fault = if level.depth >= DEPTH {
-            Some((
-                "recursive-subcircuit",
-                format!("calls nest more than {DEPTH} deep at {name}; does the definition call itself?"),
-            ))
-        } else if definition.ports.len() != nets.len() {
-            let (found, expected) = (nets.len(), definition.ports.len());
-            Some(("pin-count", format!("{name} has {found} nodes, its definition has {expected} ports")))
+        let call = self.calls[index];
+        let path = format!("{name}.");
+        let larger = self.opened.saturating_add(call.weight);
+        let fault = if OPENED < larger {
+            Some(format!("expected at most {OPENED} elements in all subcircuits together once they are expanded, found more"))
+        } else if DEPTH <= level.depth || LONGEST_PATH < path.len() {
+            Some(format!("calls nest more than {DEPTH} deep, or their names grow longer than {LONGEST_PATH} bytes"))
         } else {
             None
         };
-        if let Some((kind, message)) = fault {
-            self.faults.push(Diagnostic::at(kind, Severity::Error, statement.span, message));
-            self.add_element(Element {
-                name,
-                nets,
-                kind: ElementKind::Unmodelled,
-                span: Some(statement.span),
-            });
+        if let Some(reason) = &fault {
+            let message = format!("{reason}; {} is kept as an unmodelled part", quote(self.sources.text(statement.name)));
+            self.faults.push(Diagnostic::at("too-large", Severity::Error, statement.span, message));
+        }
+        // A circle of calls and a count of pins that differs are faults of their own already.
+        if fault.is_some() || call.endless || definition.ports.len() != nets.len() {
+            self.unmodelled(statement, name, nets);
             return;
+        }
+        if level.depth == 0 {
+            self.opened = larger;
         }
         let ports = definition.ports.iter().map(|port| self.sources.text(*port).to_ascii_lowercase());
         let ports = ports.zip(nets).collect();
@@ -458,7 +415,6 @@ impl<'a> Expander<'a> {
         parameters.assign(self.sources, given, Some(&level.parameters), &mut faults);
         parameters.assign(self.sources, &definition.body.parameters, None, &mut faults);
         self.report(faults);
-        let path = format!("{name}.");
         let inner = Level { path: &path, ports, definition: Some(index), parameters, depth: level.depth + 1 };
         self.scope(&definition.body, &inner);
     }
