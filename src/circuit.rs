@@ -8,6 +8,7 @@ mod calls;
 mod declare;
 mod expand;
 mod trace;
+mod unknown;
 mod identify;
 mod scope;
 mod values;
@@ -137,6 +138,19 @@ pub struct OpAmp {
     pub negative: Option<NetId>,
 }
 
+/// An op amp that can't be placed: which of its nodes is which pin isn't known.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Unplaced {
+    /// The element, kept as an unmodelled part.
+    pub element: ElementId,
+    /// The model or device name in the netlist.
+    pub model: String,
+    /// Why, in words.
+    pub reason: String,
+    /// What to declare.
+    pub cure: String,
+}
+
 /// What a net's voltage is known to be.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Potential {
@@ -200,6 +214,8 @@ pub struct Circuit {
     pub elements: Vec<Element>,
     /// Op amps in netlist order.
     pub op_amps: Vec<OpAmp>,
+    /// Op amps that can't be placed, in netlist order.
+    pub unplaced: Vec<Unplaced>,
     /// What ties a net to a known or declared voltage.
     pub ties: Vec<Option<Tie>>,
     /// The voltage, where it is known.

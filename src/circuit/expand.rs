@@ -2,10 +2,11 @@
 
 use crate::budget::Budget;
 use crate::circuit::calls::{Call, calls};
-use crate::circuit::identify::{Identity, Misfit, identify};
+use crate::circuit::identify::{Identity, Misfit, identify, pins_by_name};
 use crate::circuit::scope::{Definitions, Fault, Parameters};
+use crate::circuit::unknown::Undefined;
 use crate::circuit::values::{self, Passive};
-use crate::circuit::{Circuit, Element, ElementId, ElementKind, Net, NetId, OpAmp};
+use crate::circuit::{Circuit, Element, ElementId, ElementKind, Net, NetId, OpAmp, Unplaced};
 use crate::device::{Catalogue, Pin};
 use crate::diagnostic::{Diagnostic, Severity};
 use crate::netlist::{Assignment, Kind, Netlist, Passive as Stated, Scope, Statement, Value, Waveform};
@@ -38,6 +39,8 @@ pub(super) struct Expander<'a> {
     calls: Vec<Call>,
     /// Elements that calls at the top stand for.
     opened: u64,
+    /// Calls that nothing defines and no profile knows.
+    pub(super) undefined: Vec<Undefined>,
 }
 
 /// One level while it is expanded: where its names lead.
@@ -75,6 +78,7 @@ impl<'a> Expander<'a> {
             buffer: String::new(),
             calls,
             opened: 0,
+            undefined: Vec::new(),
         };
         let ground = expander.add_net("0".to_owned(), None);
         expander.circuit.nets[0].ground = true;
@@ -270,19 +274,44 @@ impl<'a> Expander<'a> {
                 Some(index) if self.calls[index].opens => {
                     self.open(statement, name, nets, parameters, index, level)
                 }
-                _ => self.unmodelled(statement, name, nets),
+                Some(index) => match pins_by_name(&self.ports(index)).filter(|pins| pins.len() == nets.len()) {
+                    Some(pins) => {
+                        let identity = Identity { profile: None, technology: None, pins };
+                        self.op_amp(statement, name, text, &nets, identity);
+                    }
+                    None => {
+                        self.unmodelled(statement, name, nets);
+                    }
+                },
+                None => {
+                    let element = self.unmodelled(statement, name, nets);
+                    self.undefined.push((element, model));
+                }
             },
-            Err(misfit) => {
-                let fault = self.misfit(statement, model, &name, misfit);
-                self.faults.push(fault);
-                self.unmodelled(statement, name, nets);
+            Err(Misfit(expected)) => {
+                let found = nets.len();
+                let reason = format!("it is called with {found} nodes, the pin order of {text} has {expected}");
+                self.unplaced(statement, name, &nets, text, reason);
             }
         }
     }
 
-    fn unmodelled(&mut self, statement: &Statement, name: String, nets: SmallVec<[NetId; 4]>) {
+    /// An op amp that can't be placed: kept as an unmodelled part, and counted.
+    fn unplaced(&mut self, statement: &Statement, name: String, nets: &[NetId], model: &str, reason: String) {
+        let cure = format!("budget: devices: {{ {model}: {{ pins: [...] }} }} gives the order of its {} nodes", nets.len());
+        let element = self.unmodelled(statement, name, nets.into());
+        self.circuit.unplaced.push(Unplaced { element, model: model.to_owned(), reason, cure });
+    }
+
+    fn unmodelled(&mut self, statement: &Statement, name: String, nets: SmallVec<[NetId; 4]>) -> ElementId {
         let span = Some(statement.span);
-        self.add_element(Element { name, nets, kind: ElementKind::Unmodelled, span });
+        self.add_element(Element { name, nets, kind: ElementKind::Unmodelled, span })
+    }
+
+    /// Port names of a definition.
+    fn ports(&self, index: usize) -> Vec<&'a str> {
+        let (sources, netlist) = (self.sources, self.netlist);
+        netlist.subcircuits[index].ports.iter().map(|port| sources.text(*port)).collect()
     }
 
     /// What a call is; the answer for a model name with a count of nodes is remembered where no
@@ -300,31 +329,10 @@ impl<'a> Expander<'a> {
         {
             return Ok(known.clone());
         }
-        let ports: Option<Vec<&str>> = found.map(|index| {
-            self.netlist.subcircuits[index].ports.iter().map(|port| self.sources.text(*port)).collect()
-        });
+        let ports = found.map(|index| self.ports(index));
         let identity = identify(self.catalogue, self.budget, (name, model), nodes, ports.as_deref())?;
         self.known.insert(key, identity.clone());
         Ok(identity)
-    }
-
-    fn misfit(&self, statement: &Statement, model: Span, name: &str, misfit: Misfit) -> Diagnostic {
-        let model_name = self.sources.text(model);
-        match misfit {
-            Misfit::NoProfile(at) => {
-                let choice = &self.budget.devices[at];
-                let profile = choice.profile.as_ref().unwrap_or(&choice.name);
-                Diagnostic::at("unknown-device", Severity::Error, profile.span, format!("no profile is named `{}`", profile.text))
-                    .help("name a profile that is embedded or given with --devices, or state `technology:`")
-            }
-            Misfit::Count(found, expected) => Diagnostic::at(
-                "pin-map",
-                Severity::Error,
-                statement.span,
-                format!("{name} calls {model_name} with {found} nodes, its pin order has {expected}; it is not analysed"),
-            )
-            .help(format!("budget: devices: {{ {model_name}: {{ pins: [...] }} }} gives the order of the {found} nodes")),
-        }
     }
 
     fn op_amp(
@@ -339,18 +347,8 @@ impl<'a> Expander<'a> {
         let (Some(non_inverting), Some(inverting), Some(output)) =
             (pin(Pin::NonInverting), pin(Pin::Inverting), pin(Pin::Output))
         else {
-            self.faults.push(Diagnostic::at(
-                "pin-map",
-                Severity::Error,
-                statement.span,
-                format!("the pin order of {name} lacks an input or the output; it is not analysed"),
-            ));
-            self.add_element(Element {
-                name,
-                nets: nets.into(),
-                kind: ElementKind::Unmodelled,
-                span: Some(statement.span),
-            });
+            let reason = "its pin order lacks an input or the output".to_owned();
+            self.unplaced(statement, name, nets, model, reason);
             return;
         };
         let index = self.circuit.op_amps.len() as u32;
