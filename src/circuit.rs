@@ -84,6 +84,8 @@ pub struct Drive {
     pub span: Option<(f64, f64)>,
     /// Whether it moves: a waveform or an AC magnitude is given.
     pub moves: bool,
+    /// Whether its value stands there but can't be told.
+    pub unknown: bool,
 }
 
 /// What an element is.

@@ -27,7 +27,7 @@ pub fn build(
     declarer.declare(budget);
     let declared = declarer.finish();
     let Expander { mut circuit, mut faults, undefined, .. } = expander;
-    trace::sources(&mut circuit);
+    faults.extend(trace::sources(&mut circuit));
     trace::declared(&mut circuit, declared);
     faults.extend(unknown::settle(sources, &mut circuit, &undefined));
     circuit.connect();

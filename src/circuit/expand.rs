@@ -27,7 +27,7 @@ pub(super) struct Expander<'a> {
     pub(super) sources: &'a Sources,
     netlist: &'a Netlist,
     pub(super) budget: &'a Budget,
-    catalogue: &'a Catalogue,
+    pub(super) catalogue: &'a Catalogue,
     definitions: Definitions,
     pub(super) circuit: Circuit,
     pub(super) faults: Vec<Diagnostic>,
@@ -39,6 +39,10 @@ pub(super) struct Expander<'a> {
     calls: Vec<Call>,
     /// Elements that calls at the top stand for.
     opened: u64,
+    /// Which names under the budget's `absent` match an element.
+    pub(super) absent_used: Vec<bool>,
+    /// Which names under the budget's `grounds` a statement uses.
+    pub(super) grounds_used: Vec<bool>,
     /// Calls that nothing defines and no profile knows.
     pub(super) undefined: Vec<Undefined>,
 }
@@ -78,6 +82,8 @@ impl<'a> Expander<'a> {
             buffer: String::new(),
             calls,
             opened: 0,
+            absent_used: vec![false; budget.absent.len()],
+            grounds_used: vec![false; budget.grounds.len()],
             undefined: Vec::new(),
         };
         let ground = expander.add_net("0".to_owned(), None);
@@ -164,6 +170,10 @@ impl<'a> Expander<'a> {
         if let Some(net) = self.names.get(self.buffer.as_str())
             && (level.path.is_empty() || net.0 == 0 || self.is_global(text))
         {
+            if net.0 == 0 {
+                let used = self.budget.grounds.iter().position(|ground| ground.text.eq_ignore_ascii_case(text));
+                used.into_iter().for_each(|at| self.grounds_used[at] = true);
+            }
             return *net;
         }
         let name = format!("{}{text}", level.path);
@@ -186,7 +196,7 @@ impl<'a> Expander<'a> {
 
     fn statement(&mut self, statement: &'a Statement, level: &Level) {
         let name = format!("{}{}", level.path, self.sources.text(statement.name));
-        if self.budget.absent.iter().any(|absent| matches(&absent.text, &name)) {
+        if self.is_absent(&name) {
             return;
         }
         let nets: SmallVec<[NetId; 4]> = statement.nodes.iter().map(|word| self.net(*word, level)).collect();
@@ -219,6 +229,18 @@ impl<'a> Expander<'a> {
         self.add_element(Element { name, nets, kind, span: Some(statement.span) });
     }
 
+    /// Whether the budget says that an element isn't fitted; remembers which of its names were of use.
+    fn is_absent(&mut self, name: &str) -> bool {
+        let mut absent = false;
+        for (at, pattern) in self.budget.absent.iter().enumerate() {
+            if matches(&pattern.text, name) {
+                self.absent_used[at] = true;
+                absent = true;
+            }
+        }
+        absent
+    }
+
     fn value(&mut self, value: Value, level: &Level) -> Option<f64> {
         level.parameters.value(self.sources, value).map_err(|fault| self.report(vec![fault])).ok()
     }
@@ -226,7 +248,8 @@ impl<'a> Expander<'a> {
     fn drive(&mut self, waveform: &Waveform, level: &Level) -> crate::circuit::Drive {
         let dc = waveform.dc.and_then(|value| self.value(value, level));
         let moves = waveform.ac || waveform.unknown || waveform.span.is_some();
-        values::drive(dc, waveform.span, moves)
+        let unknown = dc.is_none() && (waveform.unknown || waveform.dc.is_some());
+        values::drive(dc, waveform.span, moves, unknown)
     }
 
     /// Two resistors at half travel; the second node is the wiper.
