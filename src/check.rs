@@ -80,6 +80,11 @@ pub fn run(options: &Options) -> Outcome {
     Outcome { sources, report: Report { verdict, boards }, unusable, complete: options.complete }
 }
 
+/// The embedded profiles and what is assumed beside them.
+pub fn catalogue() -> crate::device::Catalogue {
+    files::packs(&mut Sources::default(), &[], &[]).catalogue
+}
+
 fn found(path: &Path, unusable: &mut Vec<String>) -> Vec<PathBuf> {
     let netlists = files::netlists(path);
     if netlists.is_empty() {

@@ -213,8 +213,6 @@ fn finding(
         Rank::Assumed => ", on assumed data",
         _ => "",
     };
-    let topology = if subject.topology == "unclassified" { "" } else { subject.topology };
-    let space = if topology.is_empty() { "" } else { ", " };
     Finding {
         rule: doc.slug.to_owned(),
         severity,
@@ -223,7 +221,7 @@ fn finding(
         limit: Some(limit),
         unit: Some(doc.unit),
         message: format!(
-            "{}{space}{topology}: {} is {number} {case}, {verdict}{assumed}",
+            "{} {} is {number} {case}, {verdict}{assumed}",
             subject.id, doc.title
         ),
         cure: Some(cure(subject, figure, worst, limit, data)),
@@ -232,31 +230,39 @@ fn finding(
     }
 }
 
-/// What must change and which way, led by the item with the largest share.
+/// What must change and which way: by the item with the largest share, and by how much.
 fn cure(subject: &Subject, figure: &Figure, worst: f64, limit: f64, data: Rank) -> String {
     let shares = figure.shares();
     let lines = figure.ledger.iter().zip(&shares).filter_map(|(line, share)| Some((line, (*share)?)));
-    let with_worst = lines.filter(|(line, _)| pushes(figure, line.effect, worst));
-    let leading = with_worst.max_by(|a, b| a.1.total_cmp(&b.1));
+    let pushing: Vec<_> = lines.filter(|(line, _)| pushes(figure, line.effect, worst)).collect();
+    let leading = pushing.iter().max_by(|a, b| a.1.total_cmp(&b.1));
     let doc = figure.kind.doc();
     let short = match doc.bad {
         Bad::Low => limit - worst,
         Bad::High | Bad::Either => worst.abs() - limit.abs(),
     };
-    let mut text = String::new();
-    if let Some((line, share)) = leading {
-        let name = line.item.label(subject.circuit);
-        text = format!("{name} makes {} of it; ", percent(share));
-        if 0.0 < short && short < line.effect.abs() {
-            let factor = line.effect.abs() / (line.effect.abs() - short);
-            text = format!(
-                "{name} makes {} of it and must act {} times less; ",
-                percent(share),
-                show(factor, Unit::One)
-            );
+    let name = |item: Item| item.label(subject.circuit);
+    let mut text = match leading.map(|(line, _)| line.item) {
+        Some(Item::Resistor(_) | Item::Group(_)) if doc.bad == Bad::Either => {
+            let resistors = pushing.iter().filter(|(line, share)| {
+                0.1 < *share && matches!(line.item, Item::Resistor(_) | Item::Group(_))
+            });
+            let names: Vec<String> = resistors.map(|(line, _)| name(line.item)).collect();
+            format!("tighten the tolerance of {}, or take a matched network", names.join(" and "))
         }
+        Some(Item::Values) => "change the ratio of the gain resistors: their nominal values miss the intended gain".to_owned(),
+        Some(Item::Upstream(_)) => format!("{} comes first: look at the stage that drives it", name(leading.map_or(Item::Nominal, |(line, _)| line.item))),
+        _ => doc.cure.to_owned(),
+    };
+    if doc.bad == Bad::Low && doc.unit == Unit::Volt && 0.0 < short {
+        text = format!("{} are missing: {text}", show(short, doc.unit));
+    } else if let Some((line, _)) = leading
+        && 0.0 < short
+        && short < line.effect.abs()
+    {
+        let factor = line.effect.abs() / (line.effect.abs() - short);
+        text.push_str(&format!("; {} must act {factor:.2} times less", name(line.item)));
     }
-    text.push_str(doc.cure);
     if data == Rank::Assumed {
         text.push_str(&format!("; declare {} to decide", deciding(subject, figure)));
     }
@@ -300,8 +306,8 @@ fn labels(subject: &Subject, figure: &Figure) -> Vec<Label> {
             continue;
         }
         let text = match line.item {
-            Item::OpAmp(_, what) => format!("{what} {}", percent(share)),
-            _ => percent(share),
+            Item::OpAmp(_, what) => format!("{what} {:.0} %", share * 100.0),
+            _ => format!("{:.0} %", share * 100.0),
         };
         match found.iter_mut().find(|(known, ..)| *known == element) {
             Some((_, sum, texts)) => {
