@@ -2,6 +2,7 @@
 //! and `cli` the only place that reads and writes files.
 
 mod board;
+mod cover;
 mod embedded;
 mod files;
 mod stages;

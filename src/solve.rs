@@ -13,6 +13,7 @@ mod gradient;
 mod model;
 mod network;
 mod parameter;
+mod shorted;
 mod system;
 
 pub use board::{Board, Primary, PrimaryKind, Row};

@@ -294,10 +294,14 @@ pub fn explain(circuit: &Circuit, layout: &Layout, fault: &Fault) -> String {
     let op_amp = |at: &u32| &circuit.op_amps[*at as usize];
     match fault {
         Fault::NoPath(at) => format!("no DC path to the input on net {}", net(at)),
-        Fault::NoValue(at) => format!("{} has no value", circuit.element(*at).name),
+        Fault::NoValue(at) => format!("{} has no value that can be used", circuit.element(*at).name),
+        Fault::ShortLoop(at) => format!(
+            "{} closes a loop of voltage sources or inductors, or ties two held voltages together",
+            circuit.element(*at).name
+        ),
         Fault::UnknownDevice(at) => format!("unknown device {} ({})", op_amp(at).model, op_amp(at).name),
         Fault::NoGain(at) => format!("the profile of {} gives no open-loop gain", op_amp(at).name),
-        Fault::TooLarge(size) => format!("its block has {size} unknowns, too many to solve together"),
+        Fault::TooLarge(size) => format!("its block has {size} unknowns or resistors, too many to solve together"),
         Fault::Singular(Some(at)) => format!("its equations have no single solution at net {}", net(at)),
         Fault::Singular(None) => "its equations have no single solution".to_owned(),
         Fault::NoTwin(Some(at)) if matches!(layout.role(*at), Role::Output(_)) => {
