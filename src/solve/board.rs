@@ -438,7 +438,10 @@ pub(super) fn rail_deviation(circuit: &Circuit, net: NetId, assumed: f64) -> (f6
         return (0.0, Rank::Guaranteed);
     }
     match potential.range {
-        Some((low, high)) if low < high => ((high - low) / 2.0, Rank::Guaranteed),
+        // A source's single value says nothing of what a rail may do; a declared deviation of nought does.
+        Some((low, high)) if low < high || circuit.tie(net) == Some(Tie::Rail) => {
+            ((high - low) / 2.0, Rank::Guaranteed)
+        }
         _ => (potential.nominal.abs() * assumed, Rank::Assumed),
     }
 }
