@@ -28,6 +28,7 @@ pub fn build(
     let declared = declarer.finish();
     let Expander { mut circuit, faults, .. } = expander;
     trace::sources(&mut circuit);
+    trace::currents(&mut circuit);
     trace::declared(&mut circuit, declared);
     circuit.connect();
     trace::names(&mut circuit);
