@@ -35,8 +35,11 @@ fn main_transfer(stage: &StageReport) -> (String, String) {
     (fine(main.ideal, main.unit), actual)
 }
 
-/// The heaviest status and the figures that have it: `broken: gain-error and 2 more`.
+/// The heaviest status and the figures that have it: `broken: gain-error and 2 more`. Where no signal
+/// enters, as in the buffer of a reference, a gain isn't unknown but absent.
 fn worst_figure(figures: &[FigureReport]) -> String {
+    let absent = |figure: &&FigureReport| figure.reason.as_deref() == Some("no signal port");
+    let figures: Vec<&FigureReport> = figures.iter().filter(|figure| !absent(figure)).collect();
     let Some(worst) = figures.iter().map(|figure| figure.status).max() else {
         return "not computed".to_owned();
     };
