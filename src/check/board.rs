@@ -3,8 +3,8 @@
 use crate::block::{Layout, lay_out, name};
 use crate::budget::{self, Budget};
 use crate::check::Options;
-use crate::check::files::{self, Includer, Packs};
 use crate::check::cover;
+use crate::check::files::{self, Includer, Packs};
 use crate::check::stages::{self, Judgement};
 use crate::circuit::{self, Circuit, NetId};
 use crate::diagnostic::{Diagnostic, Label, Severity};

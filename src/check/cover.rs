@@ -99,7 +99,9 @@ fn unsolved(board: &Board, amp: AmpId, op_amp: u32, fault: &Fault) -> Case {
     let cure = match fault {
         Fault::UnknownDevice(at) => {
             let model = &board.circuit.op_amps[*at as usize].model;
-            Some(format!("budget: devices: {{ {model}: {{ profile: ... }} }}, or give a profile with --devices"))
+            Some(format!(
+                "budget: devices: {{ {model}: {{ profile: ... }} }}, or give a profile with --devices"
+            ))
         }
         _ => None,
     };

@@ -102,30 +102,6 @@ pub(super) fn currents(circuit: &mut Circuit) {
     }
 }
 
-/// Current sources of the netlist as currents that feed nets. A current that the budget declares for the
-/// same net stands before what a source says.
-pub(super) fn currents(circuit: &mut Circuit) {
-    let declared: Vec<NetId> = circuit.currents.iter().map(|current| current.into).collect();
-    for element in &circuit.elements {
-        let (ElementKind::CurrentSource(drive), [from, into]) = (&element.kind, element.nets.as_slice())
-        else {
-            continue;
-        };
-        // A source that draws from a net is counted as what flows into it, with the sign turned.
-        let (into, from, sign) = match *into {
-            Circuit::GROUND => (*from, *into, -1.0),
-            _ => (*into, *from, 1.0),
-        };
-        if into == from || declared.contains(&into) {
-            continue;
-        }
-        let own = drive.span.or(drive.dc.filter(|_| !drive.moves).map(|amps| (amps, amps)));
-        let range = own.map(|(a, b)| ((sign * a).min(sign * b), (sign * a).max(sign * b)));
-        let name = circuit.nets[into.0 as usize].name.clone();
-        circuit.currents.push(CurrentInput { name, into, from, range, span: element.span });
-    }
-}
-
 /// Takes what the budget declares; it stands before what sources say.
 pub(super) fn declared(circuit: &mut Circuit, declared: Declared) {
     for (net, voltage) in declared.rails {
