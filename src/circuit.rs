@@ -288,6 +288,20 @@ impl Circuit {
         self.potentials[net.0 as usize]
     }
 
+    /// Puts another value on a resistor, capacitor or inductor; whether there is one of that name.
+    pub fn set_value(&mut self, name: &str, value: f64) -> bool {
+        let mut found = false;
+        for element in self.elements.iter_mut().filter(|element| element.name.eq_ignore_ascii_case(name)) {
+            if let ElementKind::Resistor(part) | ElementKind::Capacitor(part) | ElementKind::Inductor(part) =
+                &mut element.kind
+            {
+                part.value = Some(value).filter(|value| 0.0 < *value && value.is_finite());
+                found = true;
+            }
+        }
+        found
+    }
+
     /// Joins nets and elements into the graph; nothing may be added afterwards.
     fn connect(&mut self) {
         let mut graph =

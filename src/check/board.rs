@@ -13,7 +13,7 @@ use crate::netlist;
 use crate::report::{BoardReport, Coverage, Verdict};
 use crate::rule::{Finding, Waived};
 use crate::solve::Board;
-use crate::source::{Sources, matches, nearest};
+use crate::source::{Sources, matches, nearest, quote};
 use std::path::{Path, PathBuf};
 
 /// A board's report, and the files that belong to it and can't be used.
@@ -63,8 +63,18 @@ pub(super) fn check(sources: &mut Sources, packs: &Packs, options: &Options, pat
             report.findings.extend(faults.into_iter().map(Finding::from));
             let (mut circuit, faults) = circuit::build(sources, &netlist, &budget, &packs.catalogue);
             report.findings.extend(faults.into_iter().map(Finding::from));
+            for (name, value) in &options.with {
+                if !circuit.set_value(name, *value) {
+                    unusable.push(format!(
+                        "{shown}: no resistor, capacitor or inductor is named {}",
+                        quote(name)
+                    ));
+                }
+            }
             let layout = lay_out(&mut circuit);
-            analyse(packs, &budget, &circuit, &layout, &mut report);
+            let detail =
+                stages::Detail { sources: options.detail.then_some(&*sources), trials: options.trials };
+            analyse(packs, &budget, (&circuit, &layout), detail, &mut report);
         }
         Err(reason) => {
             unusable.push(format!("{shown}: {reason}"));
@@ -83,13 +93,19 @@ fn budget_path(options: &Options, path: &Path) -> Option<PathBuf> {
     options.budget.clone().or_else(|| Some(path.with_extension("budget.yaml")).filter(|path| path.is_file()))
 }
 
-fn analyse(packs: &Packs, budget: &Budget, circuit: &Circuit, layout: &Layout, report: &mut BoardReport) {
+fn analyse(
+    packs: &Packs,
+    budget: &Budget,
+    (circuit, layout): (&Circuit, &Layout),
+    detail: stages::Detail,
+    report: &mut BoardReport,
+) {
     report.findings.extend(misnamed(budget, circuit));
     let supplies = supplies(budget, circuit);
     let board = Board::new(circuit, layout, &packs.catalogue, supplies);
     let names = name(circuit, layout, &|net| board.level(net));
     let moved = deviations(&board);
-    let judged = stages::judge_all(&board, budget, &packs.rules, &names, &moved);
+    let judged = stages::judge_all(&board, budget, &packs.rules, &names, &moved, detail);
     cover::count(&board, report);
     report.assumed = stages::assumed(&board, budget);
     report.findings.extend(stages::unjudged(&board, &judged));

@@ -64,7 +64,7 @@ pub(super) fn compute(stage: &Stage, from: Option<Main>, intended: Option<f64>) 
     let quantity = GainError { stage: *stage, from, intended };
     let axes = axes(stage.model(), true);
     match study(&quantity, &axes, Bad::Either) {
-        Some(found) => stage.figure_of(Kind::GainError, &axes, &found, &[], true),
+        Some(found) => stage.figure_of(Kind::GainError, &quantity, &axes, &found, &[], true),
         None => Figure::unknown(Kind::GainError, "its equations have no solution at the worst corner"),
     }
 }

@@ -6,7 +6,7 @@ use crate::figure::disturbance::Extra;
 use crate::figure::linear::{Linear, Reading, axes};
 use crate::figure::stage::Stage;
 use crate::figure::study::{Axis, Quantity, study};
-use crate::figure::{Bad, Figure, Item, Kind};
+use crate::figure::{Bad, Figure, Item, Kind, Quality};
 use crate::solve::{Excitation, Node};
 use smallvec::smallvec;
 
@@ -49,8 +49,8 @@ impl<'b> Stage<'b> {
         linear.at(&point, &mut gradient);
         let own = self.model().parameters.len();
         let typical =
-            gradient[own..].iter().zip(&extras).map(|(slope, extra)| slope.abs() * extra.typical).sum();
-        Figure { nominal: Some(typical), ..self.figure_of(kind, &axes, &found, &items, true) }
+            gradient[own..].iter().zip(&extras).map(|(slope, extra)| slope.abs() * extra.axis.typical).sum();
+        Figure { nominal: Some(typical), ..self.figure_of(kind, &linear, &axes, &found, &items, true) }
     }
 
     /// A reading of one node with disturbances.
@@ -99,12 +99,18 @@ impl<'b> Stage<'b> {
         let kept = self.spread(key, current).ok_or_else(|| self.missing(key))?;
         let sign = if bound.high { -1.0 } else { 1.0 };
         extras.extend(self.rail_extras(bound.net.map(|net| (net, -sign))));
-        let mut kept_axis =
-            Extra::symmetric(Default::default(), Item::OpAmp(self.op_amp, key.name()), 0.0, 0.0, kept.rank);
+        let mut kept_axis = Extra::symmetric(
+            Default::default(),
+            Item::OpAmp(self.op_amp, Quality::distance(key)),
+            0.0,
+            0.0,
+            kept.rank,
+        );
         kept_axis.effect.direct = -1.0;
         kept_axis.axis = Axis {
             base: kept.nominal,
             nominal: kept.nominal,
+            typical: kept.nominal,
             low: kept.low,
             high: kept.high,
             rank: kept.rank,
@@ -143,7 +149,7 @@ impl<'b> Stage<'b> {
             return Figure::unknown(kind, "there is no distance to take");
         };
         let nominal = distances.iter().map(|distance| distance.nominal).fold(f64::INFINITY, f64::min);
-        let figure = self.figure_of(kind, &least.axes, found, &least.items, false);
+        let figure = self.figure_of(kind, &least.linear, &least.axes, found, &least.items, false);
         let rests_on = self.device().supply.map_or(ranges, |supply| ranges.max(supply.rank));
         let kept = |distance: &Distance| 0.0 <= distance.nominal + distance.fall;
         let zero = least.ground && distances.iter().all(|distance| distance.ground || kept(distance));

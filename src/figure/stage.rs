@@ -83,6 +83,8 @@ pub struct Stage<'b> {
     pub op_amp: u32,
     /// What moves each amplifier's output beyond its signals, volt, with its rank.
     pub deviations: &'b [(f64, Rank)],
+    /// How many random trials each figure gets.
+    pub trials: u32,
 }
 
 /// Everything that is computed of a stage.
@@ -104,7 +106,7 @@ impl<'b> Stage<'b> {
     /// The stage of an amplifier; `None` for a controlled source.
     pub fn of(board: &'b Board<'b>, deviations: &'b [(f64, Rank)], amp: AmpId) -> Option<Stage<'b>> {
         let (block, member) = board.place[amp.0 as usize];
-        Some(Stage { board, block, member, op_amp: board.layout.amp(amp).op_amp?, deviations })
+        Some(Stage { board, block, member, op_amp: board.layout.amp(amp).op_amp?, deviations, trials: 0 })
     }
 
     /// The block's equations.

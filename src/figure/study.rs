@@ -16,6 +16,8 @@ pub(super) struct Axis {
     pub base: f64,
     /// Nominal value.
     pub nominal: f64,
+    /// What it usually is: nominal, or the typical magnitude of a value of either sign.
+    pub typical: f64,
     /// Least value.
     pub low: f64,
     /// Greatest value.
