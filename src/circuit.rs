@@ -71,6 +71,8 @@ pub struct Part {
     pub rank: Rank,
     /// Rated power (watt) or voltage (volt), where stated.
     pub rating: Option<f64>,
+    /// Value at either end of its travel, ohm, where it is adjustable.
+    pub travel: Option<(f64, f64)>,
     /// Index of the matched group it belongs to, with the tolerance of the group's ratios.
     pub group: Option<(u32, f64)>,
 }

@@ -1,5 +1,6 @@
 //! Figures: what is computed of each stage. One file a figure, with its doc, formula, source and ledger.
 
+mod adjust;
 mod bias_error;
 mod common_error;
 mod deviation;

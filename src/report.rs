@@ -117,6 +117,8 @@ pub struct TransferReport {
     pub ideal: f64,
     /// With the real op amp; `None` where the device is unknown.
     pub actual: Option<f64>,
+    /// Least and greatest over the travel of adjustable parts, where there are any.
+    pub adjusts: Option<(f64, f64)>,
     /// `actual/ideal - 1`; `None` where there is none.
     pub error: Option<f64>,
 }

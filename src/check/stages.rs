@@ -146,6 +146,7 @@ fn transfers(found: &[Transfer], main: Option<usize>) -> Vec<TransferReport> {
         input: transfer.input.name.clone(),
         unit: if matches!(transfer.input.from, Main::Current(_)) { "ohm" } else { "V/V" },
         frequency: 0.0,
+        adjusts: transfer.adjusts,
         ideal: transfer.ideal,
         actual: transfer.actual,
         error: transfer.actual.filter(|_| transfer.ideal != 0.0).map(|actual| actual / transfer.ideal - 1.0),

@@ -68,6 +68,8 @@ pub struct Transfer {
     pub ideal: f64,
     /// With the real op amp; `None` for an unknown device.
     pub actual: Option<f64>,
+    /// Least and greatest over the travel of adjustable parts, where there are any.
+    pub adjusts: Option<(f64, f64)>,
 }
 
 /// One stage while its figures are computed.
@@ -263,6 +265,7 @@ impl<'b> Stage<'b> {
         let real = Solved::new(&model.network, model.nominal.clone()).ok().filter(|_| known);
         let weights = real.as_ref().map(|real| real.adjoint(&[(self.output(), 1.0)]));
         let make = |input: Input| Transfer {
+            adjusts: real.as_ref().and_then(|_| self.adjusts(input.from)),
             ideal: self.transfer(&twin, &ideal, input.from),
             actual: real
                 .as_ref()
