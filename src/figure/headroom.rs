@@ -43,6 +43,7 @@ impl<'b> Stage<'b> {
         let Some(found) = study(&linear, &axes, Bad::High) else {
             return Figure::unknown(kind, "its equations have no solution at the worst corner");
         };
+        let found = both_ways(&linear, &axes, found);
         // The nominal is the sum of typical magnitudes in the nominal circuit.
         let point: Vec<f64> = axes.iter().map(|axis| axis.nominal).collect();
         let mut gradient = vec![0.0; axes.len()];
@@ -155,6 +156,39 @@ impl<'b> Stage<'b> {
         let zero = least.ground && distances.iter().all(|distance| distance.ground || kept(distance));
         Figure { nominal: Some(nominal), rests_on, zero, ..figure }
     }
+}
+
+/// The worse of a study and of those in which one disturbance has the other sign.
+///
+/// The sign that a disturbance has in the nominal circuit may be the wrong one at the worst corner: where both
+/// inputs see nearly the same resistance, the effect of the bias current is near nought and tolerances turn it.
+fn both_ways(linear: &Linear, axes: &[Axis], mut worst: Study) -> Study {
+    for extra in linear.model.parameters.len()..axes.len() {
+        if !may_turn(linear, axes, extra) {
+            continue;
+        }
+        for end in [axes[extra].low, axes[extra].high] {
+            let mut pinned = axes.to_vec();
+            pinned[extra] = Axis { low: end, high: end, ..axes[extra] };
+            match study(linear, &pinned, Bad::High) {
+                Some(found) if worst.worst < found.worst => worst = found,
+                _ => {}
+            }
+        }
+    }
+    worst
+}
+
+/// Whether the stage's values, within their ranges, may turn the sign of a disturbance's effect, to first order.
+fn may_turn(linear: &Linear, axes: &[Axis], extra: usize) -> bool {
+    let mut point: Vec<f64> = axes.iter().map(|axis| axis.nominal).collect();
+    point[extra] = axes[extra].high;
+    let mut gradient = vec![0.0; axes.len()];
+    let Some(effect) = linear.at(&point, &mut gradient) else { return true };
+    let own = gradient.iter().zip(axes).take(linear.model.parameters.len());
+    let reach: f64 =
+        own.map(|(slope, axis)| slope.abs() * (axis.high - axis.nominal).max(axis.nominal - axis.low)).sum();
+    effect.abs() <= reach
 }
 
 /// Appends the axes of extra values; returns them with the names of the extra ones.
