@@ -6,13 +6,8 @@ use crate::circuit::{Circuit, NetId, Tie};
 use crate::device::{Catalogue, Rank};
 use crate::solve::device::{Device, Supply};
 use crate::solve::model::{Fault, Model};
-use crate::solve::{Excitation, LoadStamp, Node, Solved, regenerates};
+use crate::solve::{Drain, Excitation, Feed, LoadStamp, Node, Solved, regenerates};
 use rustc_hash::FxHashMap;
-
-/// Rows are swept forward until none moves by more than this share of its largest entry.
-const STILL: f64 = 1e-13;
-/// Random boards with weak op amps took 6 sweeps at most.
-const MOST_SWEEPS: usize = 40;
 
 /// What a primary quantity is.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -123,8 +118,17 @@ impl<'a> Board<'a> {
         };
         board.rank_outputs();
         board.load();
-        board.enumerate();
-        board.sweep();
+        // A block whose loads make it regenerate is found by the sweep; its outputs are primaries then.
+        loop {
+            board.enumerate();
+            let faults = board.sweep();
+            if faults.is_empty() {
+                break;
+            }
+            for (block, fault) in faults {
+                board.models[block].fault.get_or_insert(fault);
+            }
+        }
         board
     }
 
@@ -171,39 +175,48 @@ impl<'a> Board<'a> {
         }
     }
 
-    /// What a quantity gains from each primary, given its transfers from a block's ports, from the
-    /// currents that feed the block, and its constant part.
-    pub fn compose(&self, block: usize, ports: &[f64], currents: &[f64], constant: f64) -> Row {
+    /// What a quantity gains from each primary, given its transfers from a block's ports and what it has
+    /// of the block's own: see [`Board::own`].
+    pub fn compose(&self, block: usize, ports: &[f64], own: &[(u32, f64)]) -> Row {
         let mut terms: Row = Vec::with_capacity(8);
         for (port, transfer) in self.models[block].ports.iter().zip(ports) {
             if *transfer != 0.0 {
                 terms.extend(self.row(port).iter().map(|(at, entry)| (*at, entry * transfer)));
             }
         }
-        let feeds = &self.layout.blocks[block].currents;
-        terms.extend(
-            feeds.iter().zip(currents).map(|(at, transfer)| (self.first_current as u32 + at, *transfer)),
-        );
-        terms.push((0, constant));
-        terms.sort_by_key(|(at, _)| *at);
-        let mut row: Row = Vec::with_capacity(terms.len());
-        for (at, entry) in terms {
-            match row.last_mut() {
-                Some((last, sum)) if *last == at => *sum += entry,
-                _ => row.push((at, entry)),
-            }
+        terms.extend(own);
+        collect(terms)
+    }
+
+    /// What a quantity gains from the currents that feed a block, from what later blocks draw from it by
+    /// themselves, and its constant part; `weight` is the effect of a current into a node.
+    pub fn own(&self, block: usize, weight: impl Fn(Node) -> f64, constant: f64) -> Row {
+        let mut terms: Row = vec![(0, constant)];
+        for (at, (into, from)) in self.layout.blocks[block].currents.iter().zip(self.currents(block)) {
+            terms.push((self.first_current as u32 + at, weight(into) - weight(from)));
         }
-        row.retain(|(_, entry)| *entry != 0.0);
-        row
+        for drain in &self.models[block].drains {
+            terms.push((self.primary_of_feed(drain.feed), -drain.amps * weight(Node::Unknown(drain.output))));
+        }
+        collect(terms)
+    }
+
+    /// The primary behind what later blocks draw by themselves.
+    pub fn primary_of_feed(&self, feed: Feed) -> u32 {
+        match feed {
+            Feed::Constant => 0,
+            Feed::Current(at) => self.first_current as u32 + at,
+        }
     }
 
     /// From the last block to the first: each is solved under its load and reduced to what it draws from
     /// the outputs that feed it.
     fn load(&mut self) {
+        self.drain_sources();
         for at in (0..self.models.len()).rev() {
             let fault = self.verify(at);
             self.models[at].fault = self.models[at].fault.take().or(fault);
-            let Some(draws) = self.draws(at) else { continue };
+            let Some((draws, drains)) = self.draws(at) else { continue };
             for (amp, net, siemens) in draws {
                 let (block, _) = self.place[amp.0 as usize];
                 let output = self.layout.amp(amp).output;
@@ -213,6 +226,31 @@ impl<'a> Board<'a> {
                     continue;
                 };
                 model.network.loads.push(LoadStamp { output, node, siemens });
+            }
+            for (amp, feed, amps) in drains {
+                self.drain(amp, feed, amps);
+            }
+        }
+    }
+
+    /// A current that leaves an output for one unit of what feeds it.
+    fn drain(&mut self, amp: AmpId, feed: Feed, amps: f64) {
+        let model = &mut self.models[self.place[amp.0 as usize].0];
+        if let Some(Node::Unknown(output)) = model.node(self.layout.amp(amp).output) {
+            model.drains.push(Drain { output, feed, amps });
+        }
+    }
+
+    /// Currents that sources draw from outputs, beyond those that feed the output's own block.
+    fn drain_sources(&mut self) {
+        let circuit = self.circuit;
+        for (at, current) in circuit.currents.iter().enumerate() {
+            for (net, amps) in [(current.into, -1.0), (current.from, 1.0)] {
+                let Role::Output(amp) = self.layout.role(net) else { continue };
+                let (block, _) = self.place[amp.0 as usize];
+                if !self.layout.blocks[block].currents.contains(&(at as u32)) {
+                    self.drain(amp, Feed::Current(at as u32), amps);
+                }
             }
         }
     }
@@ -242,8 +280,8 @@ impl<'a> Board<'a> {
         regenerates(&model.network, &model.nominal).then_some(Fault::Regenerative)
     }
 
-    /// Currents that a block draws from outputs for a volt at a net: output, net, siemens.
-    fn draws(&self, at: usize) -> Option<Vec<(AmpId, NetId, f64)>> {
+    /// Currents that a block draws from the outputs that feed it: for a volt at a net, and by itself.
+    fn draws(&self, at: usize) -> Option<(Draws, Drains)> {
         let (model, block) = (&self.models[at], &self.layout.blocks[at]);
         let fed: Vec<(usize, AmpId)> = model
             .ports
@@ -258,23 +296,60 @@ impl<'a> Board<'a> {
             return None;
         }
         let solved = Solved::new(&model.network, model.nominal.clone()).ok()?;
-        let counted = if block.owns_network { model.feedback_branches } else { 0 };
-        let mut draws = Vec::new();
+        // Of several blocks on one network only one counts it; what hangs on outputs is counted there.
+        let (branches, shorts) =
+            if block.owns_network { (model.feedback_branches, model.feedback_shorts) } else { (0, 0) };
+        let drawn = |excitation: &Excitation<f64>| {
+            let state = solved.forward(excitation);
+            let amps = |amp: usize| block.owns_network || model.held(amp);
+            let drawn = solved.drawn(&state, branches, shorts, amps);
+            let taken: Vec<(AmpId, f64)> = fed.iter().map(|(place, amp)| (*amp, drawn[*place])).collect();
+            taken.into_iter().filter(|(_, amps)| *amps != 0.0)
+        };
+        let (mut draws, mut drains) = (Draws::new(), Drains::new());
         for (column, port) in model.ports.iter().enumerate() {
-            let state = solved.forward(&Excitation::port(model.ports.len(), column));
-            let drawn =
-                solved.drawn(&state, |branch| branch < counted, |amp| block.owns_network || model.held(amp));
-            for (place, amp) in &fed {
-                if drawn[*place] != 0.0 {
-                    draws.push((*amp, port.net, drawn[*place]));
-                }
+            let taken = drawn(&Excitation::port(model.ports.len(), column));
+            draws.extend(taken.map(|(amp, siemens)| (amp, port.net, siemens)));
+        }
+        for feed in self.feeds(at) {
+            let taken = drawn(&self.fed(at, feed));
+            drains.extend(taken.map(|(amp, amps)| (amp, feed, amps)));
+        }
+        Some((draws, drains))
+    }
+
+    /// What feeds a block beside its ports.
+    fn feeds(&self, at: usize) -> Vec<Feed> {
+        let model = &self.models[at];
+        let mut feeds: Vec<Feed> =
+            self.layout.blocks[at].currents.iter().map(|at| Feed::Current(*at)).collect();
+        feeds.extend(model.drains.iter().map(|drain| drain.feed));
+        if model.network.shorts.iter().any(|short| short.volts != 0.0) {
+            feeds.push(Feed::Constant);
+        }
+        feeds.sort_unstable();
+        feeds.dedup();
+        feeds
+    }
+
+    /// A block's excitation by one unit of what feeds it.
+    fn fed(&self, at: usize, feed: Feed) -> Excitation<f64> {
+        let model = &self.models[at];
+        let mut excitation = Excitation { constant: feed == Feed::Constant, ..Excitation::none() };
+        for (current, (into, from)) in self.layout.blocks[at].currents.iter().zip(self.currents(at)) {
+            if Feed::Current(*current) == feed {
+                excitation.injections.extend([(into, 1.0), (from, -1.0)]);
             }
         }
-        Some(draws)
+        let drains = model.drains.iter().filter(|drain| drain.feed == feed);
+        excitation.injections.extend(drains.map(|drain| (Node::Unknown(drain.output), -drain.amps)));
+        excitation
     }
 
     fn enumerate(&mut self) {
         let circuit = self.circuit;
+        self.primaries.clear();
+        self.fixed.clear();
         self.primaries.push(Primary {
             kind: PrimaryKind::Constant,
             name: String::new(),
@@ -339,46 +414,6 @@ impl<'a> Board<'a> {
         primary
     }
 
-    fn sweep(&mut self) {
-        let steps: Vec<Option<Step>> = (0..self.models.len()).map(|at| self.step(at)).collect();
-        let looks_ahead = steps.iter().flatten().any(|step| step.looks_ahead);
-        for _ in 0..MOST_SWEEPS {
-            let mut moved = false;
-            for (at, step) in steps.iter().enumerate() {
-                let Some(step) = step else { continue };
-                for (member, (ports, currents, constant)) in step.outputs.iter().enumerate() {
-                    let row = self.compose(at, ports, currents, *constant);
-                    let amp = self.layout.blocks[at].members[member].0 as usize;
-                    moved |= looks_ahead && differs(&self.rows[amp], &row);
-                    self.rows[amp] = row;
-                }
-            }
-            if !moved {
-                break;
-            }
-        }
-    }
-
-    fn step(&self, at: usize) -> Option<Step> {
-        let model = &self.models[at];
-        if model.fault.is_some() {
-            return None;
-        }
-        let solved = Solved::new(&model.network, model.nominal.clone()).ok()?;
-        let outputs = (0..model.network.members).map(|member| {
-            let output = model.network.amps[member].output.map_or(Node::Ground, Node::Unknown);
-            let weights = solved.adjoint(&[(output, 1.0)]);
-            let currents =
-                self.currents(at).map(|(into, from)| weights.current(into) - weights.current(from));
-            (solved.from_ports(&weights), currents.collect(), solved.from_shorts(&weights))
-        });
-        let looks_ahead = model.ports.iter().any(|port| match port.role {
-            Role::Output(amp) => at < self.place[amp.0 as usize].0,
-            _ => false,
-        });
-        Some(Step { outputs: outputs.collect(), looks_ahead })
-    }
-
     /// The nodes that each current of a block flows into and out of.
     pub fn currents(&self, block: usize) -> impl Iterator<Item = (Node, Node)> + '_ {
         let model = &self.models[block];
@@ -390,10 +425,23 @@ impl<'a> Board<'a> {
     }
 }
 
-/// Transfers of a block's outputs from its ports, its currents, and its constant part.
-struct Step {
-    outputs: Vec<(Vec<f64>, Vec<f64>, f64)>,
-    looks_ahead: bool,
+/// Output, net, siemens: what a volt at the net draws from the output.
+type Draws = Vec<(AmpId, NetId, f64)>;
+/// Output, feed, ampere: what one unit of the feed draws from the output.
+type Drains = Vec<(AmpId, Feed, f64)>;
+
+/// A row out of terms in any order.
+fn collect(mut terms: Row) -> Row {
+    terms.sort_by_key(|(at, _)| *at);
+    let mut row: Row = Vec::with_capacity(terms.len());
+    for (at, entry) in terms {
+        match row.last_mut() {
+            Some((last, sum)) if *last == at => *sum += entry,
+            _ => row.push((at, entry)),
+        }
+    }
+    row.retain(|(_, entry)| *entry != 0.0);
+    row
 }
 
 fn signal(kind: PrimaryKind, name: String, range: Option<(f64, f64)>) -> Primary {
@@ -441,10 +489,4 @@ pub(super) fn rail_deviation(circuit: &Circuit, net: NetId, assumed: f64) -> (f6
         Some((low, high)) if low < high => ((high - low) / 2.0, Rank::Guaranteed),
         _ => (potential.nominal.abs() * assumed, Rank::Assumed),
     }
-}
-
-fn differs(old: &Row, new: &Row) -> bool {
-    let most = new.iter().fold(0.0f64, |most, (_, entry)| most.max(entry.abs()));
-    old.len() != new.len()
-        || old.iter().zip(new).any(|((a, x), (b, y))| a != b || STILL * most < (x - y).abs())
 }
