@@ -148,6 +148,12 @@ impl Nodal {
         std::iter::once(0.0).chain(unknowns.iter().take(self.nets).copied()).collect()
     }
 
+    /// The sign of the determinant, free of overflow.
+    pub fn sign(&self) -> f64 {
+        let exchanges: f64 = self.lu.p().determinant();
+        self.lu.u().diagonal().iter().fold(exchanges, |sign, pivot| sign * pivot.signum())
+    }
+
     /// A solution refined until it stands still: each remainder is summed in twice the precision.
     fn solve(&self, right: &DVector<f64>) -> DVector<f64> {
         let mut unknowns = self.lu.solve(right).expect("a board has a solution");

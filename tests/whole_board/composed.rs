@@ -6,7 +6,7 @@ use gainsay::block::lay_out;
 use gainsay::budget::Budget;
 use gainsay::circuit::{self, NetId};
 use gainsay::netlist::{self, Include};
-use gainsay::solve::{Board, Excitation, Solved};
+use gainsay::solve::{Board, Excitation, Node, Solved};
 use gainsay::source::Sources;
 
 /// The largest difference between both solutions, as a share of the row's largest entry, with its net.
@@ -51,7 +51,7 @@ pub fn compare(sketch: &Sketch) -> Comparison {
         let name = &circuit.net(id).name;
         name.strip_prefix('n').map_or(0, |digits| digits.parse().expect("nets are numbered"))
     };
-    if std::env::var("SEED").is_ok() { println!("{whole:?}\n{:?}\n{:?}", board.rows, board.primaries); }
+    if std::env::var("ROWS").is_ok() { println!("{whole:?}\n{:?}\n{:?}", board.rows, board.primaries); }
     for (amp, row) in layout.amps.iter().zip(&board.rows) {
         let row = |primary: usize| entry(row, primary);
         comparison.outputs.push(differ(net(amp.output), &whole, row));
@@ -103,6 +103,9 @@ fn states(board: &Board, at: usize) -> Vec<gainsay::solve::State<f64>> {
             if board.first_current + *current as usize == primary {
                 excitation.injections.extend([(into, 1.0), (from, -1.0)]);
             }
+        }
+        for drain in model.drains.iter().filter(|drain| board.primary_of_feed(drain.feed) as usize == primary) {
+            excitation.injections.push((Node::Unknown(drain.output), -drain.amps));
         }
         solved.forward(&excitation)
     };

@@ -299,12 +299,13 @@ impl Grower {
 
     fn controlled(&mut self) {
         let (plus, minus) = (self.driver(), if self.dice.chance(2) { 0 } else { self.driver() });
+        if plus == minus {
+            return;
+        }
         let output = self.sketch.net();
         let gain = self.dice.between(0.1, 10.0) * if self.dice.chance(3) { -1.0 } else { 1.0 };
-        if plus != minus {
-            self.sketch.elements.push(Element::Gain(output, plus, minus, gain));
-            self.outputs.push(output);
-        }
+        self.sketch.elements.push(Element::Gain(output, plus, minus, gain));
+        self.outputs.push(output);
     }
 
     /// Loads to ground, to signals, and between outputs.
