@@ -119,7 +119,8 @@ impl Board<'_> {
             })
             .collect();
         let mut matrix = DMatrix::<f64>::identity(group.len(), group.len());
-        let place: FxHashMap<NodeIndex, usize> = group.iter().enumerate().map(|(at, node)| (*node, at)).collect();
+        let place: FxHashMap<NodeIndex, usize> =
+            group.iter().enumerate().map(|(at, node)| (*node, at)).collect();
         for (from, node) in group.iter().enumerate() {
             for edge in graph.edges(*node) {
                 if let Some(to) = place.get(&edge.target()) {
@@ -137,7 +138,8 @@ impl Board<'_> {
         primaries.sort_unstable();
         primaries.dedup();
         for primary in primaries {
-            let entry = |row: &Row| row.iter().find(|(at, _)| *at == primary).map_or(0.0, |(_, entry)| *entry);
+            let entry =
+                |row: &Row| row.iter().find(|(at, _)| *at == primary).map_or(0.0, |(_, entry)| *entry);
             let right = DVector::from_iterator(rest.len(), rest.iter().map(entry));
             let solution = lu.solve(&right)?;
             for (amp, value) in amps.iter().zip(&solution) {

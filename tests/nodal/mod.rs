@@ -6,7 +6,7 @@ use nalgebra::{DMatrix, DVector, Dyn, LU};
 /// A net; 0 is ground.
 pub type Net = usize;
 
-/// The linear model of an op amp. Infinite gain and resistances with no output resistance are the twin.
+/// The linear model of an op amp; infinite values are left out.
 #[derive(Debug, Clone, Copy)]
 pub struct OpAmp {
     /// Open-loop gain.
@@ -18,10 +18,6 @@ pub struct OpAmp {
     /// Resistance behind the output, ohm.
     pub output: f64,
 }
-
-/// The ideal op amp.
-pub const TWIN: OpAmp =
-    OpAmp { gain: f64::INFINITY, differential: f64::INFINITY, common: f64::INFINITY, output: 0.0 };
 
 /// An element of a board.
 #[derive(Debug, Clone, Copy)]

@@ -9,10 +9,12 @@ use gainsay::netlist::{self, Include};
 use gainsay::solve::{Board, Excitation, Node, Solved};
 use gainsay::source::Sources;
 
-/// The largest difference between both solutions, as a share of the row's largest entry, with its net.
+/// The largest difference between both rows of a net, as a share of the row's largest entry.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Difference {
+    /// The share; 0 where both rows are 0.
     pub share: f64,
+    /// The net.
     pub net: String,
 }
 
@@ -29,6 +31,11 @@ pub struct Comparison {
 
 /// Solves a board both ways.
 pub fn compare(sketch: &Sketch) -> Comparison {
+    compare_with(sketch, sketch)
+}
+
+/// Solves a board in blocks and compares it with the whole of another one with the same nets and sources.
+pub fn compare_with(sketch: &Sketch, other: &Sketch) -> Comparison {
     let mut sources = Sources::default();
     let file = sources.add("board.cir", sketch.netlist());
     let (netlist, faults) =
@@ -46,12 +53,11 @@ pub fn compare(sketch: &Sketch) -> Comparison {
     if !comparison.faults.is_empty() {
         return comparison;
     }
-    let whole = whole(sketch, &board);
+    let whole = whole(other, &board);
     let net = |id: NetId| -> Net {
         let name = &circuit.net(id).name;
         name.strip_prefix('n').map_or(0, |digits| digits.parse().expect("nets are numbered"))
     };
-    if std::env::var("ROWS").is_ok() { println!("{whole:?}\n{:?}\n{:?}", board.rows, board.primaries); }
     for (amp, row) in layout.amps.iter().zip(&board.rows) {
         let row = |primary: usize| entry(row, primary);
         comparison.outputs.push(differ(net(amp.output), &whole, row));
@@ -104,7 +110,8 @@ fn states(board: &Board, at: usize) -> Vec<gainsay::solve::State<f64>> {
                 excitation.injections.extend([(into, 1.0), (from, -1.0)]);
             }
         }
-        for drain in model.drains.iter().filter(|drain| board.primary_of_feed(drain.feed) as usize == primary) {
+        for drain in model.drains.iter().filter(|drain| board.primary_of_feed(drain.feed) as usize == primary)
+        {
             excitation.injections.push((Node::Unknown(drain.output), -drain.amps));
         }
         solved.forward(&excitation)

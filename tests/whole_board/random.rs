@@ -60,6 +60,23 @@ impl Grower {
 
     /// A board of some stages, of whatever kinds.
     pub fn board(mut self) -> Sketch {
+        self.sources();
+        for _ in 0..1 + self.dice.below(7) {
+            let kind = self.dice.below(KINDS);
+            self.stage(kind);
+        }
+        self.loads();
+        self.sketch
+    }
+
+    /// A board of one stage of that kind.
+    pub fn stage_alone(mut self, kind: usize) -> Sketch {
+        self.sources();
+        self.stage(kind);
+        self.sketch
+    }
+
+    fn sources(&mut self) {
         for at in 0..1 + self.dice.below(3) {
             let net = self.sketch.net();
             if 0 < at && self.dice.chance(3) {
@@ -68,12 +85,6 @@ impl Grower {
             self.sketch.elements.push(Element::Source(net, 0));
             self.signals.push(net);
         }
-        for _ in 0..1 + self.dice.below(7) {
-            let kind = self.dice.below(KINDS);
-            self.stage(kind);
-        }
-        self.loads();
-        self.sketch
     }
 
     fn ohms(&mut self) -> f64 {
@@ -90,6 +101,14 @@ impl Grower {
     fn behind(&mut self, from: Net) -> Net {
         let net = self.sketch.net();
         self.resistor(from, net);
+        net
+    }
+
+    /// A new net behind a resistor and a floating source.
+    fn battery(&mut self, from: Net) -> Net {
+        let (middle, net) = (self.behind(from), self.sketch.net());
+        self.sketch.fixed.push(self.sketch.elements.len());
+        self.sketch.elements.push(Element::Source(middle, net));
         net
     }
 
@@ -168,10 +187,7 @@ impl Grower {
         for _ in 0..1 + self.dice.below(3) {
             let mut from = self.driver();
             if self.dice.chance(6) {
-                let (middle, battery) = (self.behind(from), self.sketch.net());
-                self.sketch.fixed.push(self.sketch.elements.len());
-                self.sketch.elements.push(Element::Source(middle, battery));
-                from = battery;
+                from = self.battery(from);
             }
             self.resistor(from, minus);
         }
@@ -229,8 +245,13 @@ impl Grower {
     fn transimpedance(&mut self) {
         let minus = self.sketch.net();
         self.sketch.elements.push(Element::Current(minus, 0));
-        if self.dice.chance(2) {
-            self.resistor(minus, 0);
+        match self.dice.below(3) {
+            0 => {}
+            1 => drop(self.resistor(minus, 0)),
+            _ => {
+                let from = self.driver();
+                self.resistor(from, minus);
+            }
         }
         let output = self.op_amp(0, minus);
         self.resistor(output, minus);
@@ -284,10 +305,10 @@ impl Grower {
     /// An unbuffered divider that later stages share.
     fn divider(&mut self) {
         let from = self.driver();
-        let middle = self.behind(from);
+        let middle = if self.dice.chance(4) { self.battery(from) } else { self.behind(from) };
         self.resistor(middle, 0);
         self.soft.push(middle);
-        for _ in 0..2 {
+        for _ in 0..self.dice.below(3) {
             let minus = self.sketch.net();
             let output = self.op_amp(middle, minus);
             self.resistor(output, minus);
@@ -316,7 +337,12 @@ impl Grower {
             }
             let other = self.outputs[self.dice.below(self.outputs.len())];
             if self.dice.chance(3) && other != self.outputs[at] {
-                self.resistor(self.outputs[at], other);
+                let from =
+                    if self.dice.chance(4) { self.battery(self.outputs[at]) } else { self.outputs[at] };
+                self.resistor(from, other);
+            }
+            if self.dice.chance(8) {
+                self.sketch.elements.push(Element::Current(self.outputs[at], 0));
             }
             if self.dice.chance(8) {
                 let signal = self.signals[self.dice.below(self.signals.len())];
