@@ -84,6 +84,17 @@ pub struct Block {
     pub owns_network: bool,
 }
 
+/// Why an op amp's output can't be solved for.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Unplaceable {
+    /// It is tied to ground.
+    Grounded,
+    /// It is tied to a voltage source or a declared rail.
+    Tied(NetId),
+    /// So many outputs are joined.
+    Joined(NetId, u8),
+}
+
 /// How a board is cut.
 #[derive(Debug, Default)]
 pub struct Layout {
@@ -96,7 +107,7 @@ pub struct Layout {
     /// Each amplifier of a block of several alone, the block's other outputs held.
     pub locals: Vec<(AmpId, Block)>,
     /// Op amps that can't be analysed, with the reason.
-    pub skipped: Vec<(u32, String)>,
+    pub skipped: Vec<(u32, Unplaceable)>,
     /// Nets taken for signals because nothing else could drive their network.
     pub inferred: Vec<NetId>,
     /// Networks that nothing drives, with the nets that could be the signal.

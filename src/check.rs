@@ -2,6 +2,7 @@
 //! and `cli` the only place that reads and writes files.
 
 mod board;
+mod cover;
 mod embedded;
 mod files;
 mod stages;
@@ -77,6 +78,11 @@ pub fn run(options: &Options) -> Outcome {
     }
     let verdict = boards.iter().map(|board| board.verdict).max().unwrap_or(Verdict::Incomplete);
     Outcome { sources, report: Report { verdict, boards }, unusable, complete: options.complete }
+}
+
+/// The embedded profiles and what is assumed beside them.
+pub fn catalogue() -> crate::device::Catalogue {
+    files::packs(&mut Sources::default(), &[], &[]).catalogue
 }
 
 fn found(path: &Path, unusable: &mut Vec<String>) -> Vec<PathBuf> {

@@ -4,9 +4,11 @@
 //! read right is a [`Diagnostic`](crate::diagnostic::Diagnostic); the rest of the board stands.
 
 mod apply;
+mod calls;
 mod declare;
 mod expand;
 mod trace;
+mod unknown;
 mod identify;
 mod scope;
 mod values;
@@ -82,6 +84,8 @@ pub struct Drive {
     pub span: Option<(f64, f64)>,
     /// Whether it moves: a waveform or an AC magnitude is given.
     pub moves: bool,
+    /// Whether its value stands there but can't be told.
+    pub unknown: bool,
 }
 
 /// What an element is.
@@ -134,6 +138,19 @@ pub struct OpAmp {
     pub positive: Option<NetId>,
     /// Negative supply pin.
     pub negative: Option<NetId>,
+}
+
+/// An op amp that can't be placed: which of its nodes is which pin isn't known.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Unplaced {
+    /// The element, kept as an unmodelled part.
+    pub element: ElementId,
+    /// The model or device name in the netlist.
+    pub model: String,
+    /// Why, in words.
+    pub reason: String,
+    /// What to declare.
+    pub cure: String,
 }
 
 /// What a net's voltage is known to be.
@@ -199,6 +216,8 @@ pub struct Circuit {
     pub elements: Vec<Element>,
     /// Op amps in netlist order.
     pub op_amps: Vec<OpAmp>,
+    /// Op amps that can't be placed, in netlist order.
+    pub unplaced: Vec<Unplaced>,
     /// What ties a net to a known or declared voltage.
     pub ties: Vec<Option<Tie>>,
     /// The voltage, where it is known.

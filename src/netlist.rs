@@ -206,6 +206,6 @@ pub fn read(
     let mut reader = reader::Reader::default();
     reader.run(sources, file, load);
     let reader::Reader { mut netlist, mut faults, .. } = reader;
-    finish::finish(&mut netlist, sources, &mut faults);
+    finish::finish(&mut netlist, sources, file, &mut faults);
     (netlist, faults.list)
 }

@@ -4,7 +4,7 @@ use crate::block::ends::{self, passive};
 use crate::block::roles;
 use crate::block::{Amp, AmpId, Block, Layout, Port, Role};
 use crate::circuit::{Circuit, ElementId, NetId};
-use petgraph::algo::tarjan_scc;
+use petgraph::algo::kosaraju_scc;
 use petgraph::graph::{DiGraph, NodeIndex};
 use petgraph::unionfind::UnionFind;
 use rustc_hash::FxHashMap;
@@ -159,7 +159,7 @@ fn blocks(circuit: &Circuit, layout: &Layout, networks: &Networks) -> Vec<Block>
             }
         }
     }
-    let components = tarjan_scc(&graph);
+    let components = kosaraju_scc(&graph);
     let mut owner: Vec<Option<usize>> = vec![None; networks.all.len()];
     let mut groups: Vec<Vec<AmpId>> = Vec::new();
     for component in components.into_iter().rev() {

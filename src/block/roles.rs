@@ -1,11 +1,11 @@
 //! Fixed nets: what is known to set a net before any network is looked at.
 
-use crate::block::{Amp, AmpId, Role};
+use crate::block::{Amp, AmpId, Role, Unplaceable};
 use crate::circuit::{Circuit, ElementKind, NetId, Tie};
 use crate::device::Rank;
 
 /// The amplifiers of a board, and op amps whose output is no place for one, with the reason.
-pub(super) fn amps(circuit: &Circuit) -> (Vec<Amp>, Vec<(u32, String)>) {
+pub(super) fn amps(circuit: &Circuit) -> (Vec<Amp>, Vec<(u32, Unplaceable)>) {
     let mut drivers: Vec<u8> = vec![0; circuit.nets.len()];
     for op_amp in &circuit.op_amps {
         let count = &mut drivers[op_amp.output.0 as usize];
@@ -59,19 +59,19 @@ fn follows(circuit: &Circuit, id: crate::circuit::ElementId) -> bool {
 }
 
 /// Why an op amp's output can't be solved for: more than one output, or a source, sets its net.
-fn fault(circuit: &Circuit, output: NetId, drivers: u8) -> Option<String> {
+fn fault(circuit: &Circuit, output: NetId, drivers: u8) -> Option<Unplaceable> {
     let net = circuit.net(output);
     if net.ground {
-        return Some("its output is tied to ground".to_owned());
+        return Some(Unplaceable::Grounded);
     }
     if matches!(circuit.tie(output), Some(Tie::Source | Tie::MovingSource | Tie::Rail)) {
-        return Some(format!("its output is tied to the source or rail on {}", net.name));
+        return Some(Unplaceable::Tied(output));
     }
-    (drivers > 1).then(|| format!("{drivers} outputs are joined on {}", net.name))
+    (drivers > 1).then_some(Unplaceable::Joined(output, drivers))
 }
 
 /// The role of every net before open ends are looked at.
-pub(super) fn fixed(circuit: &Circuit, amps: &[Amp], skipped: &[(u32, String)]) -> Vec<Role> {
+pub(super) fn fixed(circuit: &Circuit, amps: &[Amp], skipped: &[(u32, Unplaceable)]) -> Vec<Role> {
     let mut supply = vec![false; circuit.nets.len()];
     let mut input = vec![false; circuit.nets.len()];
     for op_amp in &circuit.op_amps {

@@ -23,10 +23,12 @@ pub fn outside_loop(circuit: &Circuit, layout: &Layout, block: &Block) -> Option
             continue;
         }
         if let Some(element) = through
-            && (inputs.contains(&net) || block.nets.binary_search(&net).is_ok())
-            && layout.role(net) == Role::Free
+            && (inputs.contains(&net) || block.nets.binary_search(&net).is_ok() || touches(block, net))
         {
             return Some(element);
+        }
+        if layout.role(net) == Role::Signal {
+            continue;
         }
         for (id, pin) in circuit.pins(net) {
             let element = circuit.element(id);
@@ -43,14 +45,25 @@ pub fn outside_loop(circuit: &Circuit, layout: &Layout, block: &Block) -> Option
                 continue;
             }
             for (other_pin, other) in element.nets.iter().enumerate() {
-                let held = layout.role(*other) != Role::Free;
-                if other_pin != pin && !held {
+                if other_pin != pin
+                    && (layout.role(*other) == Role::Free || open_end(circuit, layout, *other))
+                {
                     stack.push((*other, if unmodelled { Some(id) } else { through }));
                 }
             }
         }
     }
     None
+}
+
+/// Whether a net is held only because something outside the model is on it: no source, no declaration.
+fn open_end(circuit: &Circuit, layout: &Layout, net: NetId) -> bool {
+    layout.role(net) == Role::Signal && circuit.tie(net).is_none() && !circuit.net(net).declared
+}
+
+/// Whether a net is a port of a block's own network.
+fn touches(block: &Block, net: NetId) -> bool {
+    block.ports.iter().any(|port| port.input && port.net == net)
 }
 
 /// Designators of connectors and test points (IEC 81346-2 and common practice: J, P, X with digits, TP, CN).

@@ -3,6 +3,7 @@
 use crate::block::{Layout, lay_out, name};
 use crate::budget::{self, Budget};
 use crate::check::Options;
+use crate::check::cover;
 use crate::check::files::{self, Includer, Packs};
 use crate::check::stages::{self, Judgement};
 use crate::circuit::{self, Circuit, NetId};
@@ -11,7 +12,7 @@ use crate::figure::deviations;
 use crate::netlist;
 use crate::report::{BoardReport, Coverage, Verdict};
 use crate::rule::{Finding, Waived};
-use crate::solve::{Board, Fault};
+use crate::solve::Board;
 use crate::source::{Sources, matches, nearest};
 use std::path::{Path, PathBuf};
 
@@ -89,7 +90,7 @@ fn analyse(packs: &Packs, budget: &Budget, circuit: &Circuit, layout: &Layout, r
     let names = name(circuit, layout, &|net| board.level(net));
     let moved = deviations(&board);
     let judged = stages::judge_all(&board, budget, &packs.rules, &names, &moved);
-    cover(&board, report);
+    cover::count(&board, report);
     report.assumed = stages::assumed(&board, budget);
     report.findings.extend(stages::unjudged(&board, &judged));
     for Judgement { report: stage, findings, .. } in judged {
@@ -147,44 +148,6 @@ fn misnamed(budget: &Budget, circuit: &Circuit) -> Vec<Finding> {
         })
     };
     found.into_iter().map(finding).collect()
-}
-
-/// Counts op amps, and says of each that isn't analysed why.
-fn cover(board: &Board, report: &mut BoardReport) {
-    let circuit = board.circuit;
-    let mut coverage = Coverage { op_amps: circuit.op_amps.len(), ..Coverage::default() };
-    let mut skipped: Vec<(u32, String, &'static str)> =
-        board.layout.skipped.iter().map(|(at, reason)| (*at, reason.clone(), "not-analysed")).collect();
-    for (at, amp) in board.layout.amps.iter().enumerate() {
-        let Some(op_amp) = amp.op_amp else { continue };
-        let (block, _) = board.place[at];
-        match &board.models[block].fault {
-            None => coverage.analysed += 1,
-            Some(Fault::NonLinear(_) | Fault::OpenLoop) => coverage.non_linear += 1,
-            Some(fault) => {
-                let rule = match fault {
-                    Fault::NoPath(_) => "bias-path",
-                    Fault::Regenerative => "feedback-polarity",
-                    Fault::UnknownDevice(_) => "unknown-device",
-                    _ => "not-analysed",
-                };
-                skipped.push((op_amp, stages::reason(board, block, fault), rule));
-            }
-        }
-    }
-    skipped.sort_by_key(|(at, ..)| *at);
-    for (at, reason, rule) in skipped {
-        let op_amp = &circuit.op_amps[at as usize];
-        let message = format!("{} is not analysed: {reason}", op_amp.name);
-        let span = circuit.element(op_amp.element).span;
-        report.findings.push(Finding {
-            stage: Some(op_amp.name.clone()),
-            labels: span.map(|span| Label { span, text: String::new() }).into_iter().collect(),
-            ..plain(rule, Severity::Warning, message)
-        });
-        coverage.skipped.push((op_amp.name.clone(), reason));
-    }
-    report.coverage = coverage;
 }
 
 /// Networks that nothing drives although several nets could be the signal.

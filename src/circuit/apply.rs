@@ -3,7 +3,7 @@
 use crate::budget::Budget;
 use crate::circuit::declare::Declarer;
 use crate::circuit::expand::Expander;
-use crate::circuit::{Circuit, ElementKind, NetId, trace};
+use crate::circuit::{Circuit, ElementKind, NetId, trace, unknown};
 use crate::device::Catalogue;
 use crate::diagnostic::Diagnostic;
 use crate::netlist::Netlist;
@@ -26,10 +26,11 @@ pub fn build(
     let mut declarer = Declarer::new(&mut expander);
     declarer.declare(budget);
     let declared = declarer.finish();
-    let Expander { mut circuit, faults, .. } = expander;
-    trace::sources(&mut circuit);
+    let Expander { mut circuit, mut faults, undefined, .. } = expander;
+    faults.extend(trace::sources(&mut circuit));
     trace::currents(&mut circuit);
     trace::declared(&mut circuit, declared);
+    faults.extend(unknown::settle(sources, &mut circuit, &undefined));
     circuit.connect();
     trace::names(&mut circuit);
     (circuit, faults)

@@ -4,9 +4,9 @@ use crate::budget::{Budget, Name, Signal, Toleranced};
 use crate::circuit::expand::Expander;
 use crate::circuit::{CurrentInput, DeclaredPair, Element, ElementKind, NetId, Part};
 use crate::device::{Pin, Rank};
-use crate::diagnostic::{Diagnostic, Severity};
+use crate::diagnostic::{Diagnostic, Label, Severity};
 use crate::quantity::Unit;
-use crate::source::{Span, matches, nearest};
+use crate::source::{Span, matches, nearest, quote};
 use rustc_hash::FxHashMap;
 
 /// Voltages that the budget declares, net by net.
@@ -35,7 +35,7 @@ impl<'e, 'a> Declarer<'e, 'a> {
 
     pub(super) fn declare(&mut self, budget: &Budget) {
         for (name, voltage) in &budget.rails {
-            if let Some(net) = self.net(name) {
+            if let Some(net) = self.driven(name) {
                 self.declared.rails.push((net, *voltage));
             }
         }
@@ -55,7 +55,7 @@ impl<'e, 'a> Declarer<'e, 'a> {
         }
         budget.signals.iter().for_each(|signal| self.signal(signal));
         for pair in &budget.pairs {
-            let legs = (self.net(&pair.positive), self.net(&pair.negative));
+            let legs = (self.driven(&pair.positive), self.driven(&pair.negative));
             let (Some(positive), Some(negative)) = legs else { continue };
             let source = pair.source.map(|ohms| ohms.0);
             let leg = |declarer: &mut Self, net, name: &Name| {
@@ -73,11 +73,11 @@ impl<'e, 'a> Declarer<'e, 'a> {
                 common: pair.common,
             });
         }
-        self.absent(budget);
+        self.unused(budget);
     }
 
     fn signal(&mut self, signal: &Signal) {
-        let Some(net) = self.net(signal.net.as_ref().unwrap_or(&signal.name)) else { return };
+        let Some(net) = self.driven(signal.net.as_ref().unwrap_or(&signal.name)) else { return };
         let (name, span) = (&signal.name.text, signal.name.span);
         let range = signal.range.map(|(low, high, _)| (low, high));
         if matches!(signal.range, Some((_, _, Unit::Ampere))) {
@@ -119,17 +119,76 @@ impl<'e, 'a> Declarer<'e, 'a> {
         port
     }
 
-    /// Names under `absent` and `parts` that match no element; the pattern may hold `*`.
-    fn absent(&mut self, budget: &Budget) {
-        let exceptions = budget.parts.iter().flat_map(|part| &part.matches);
-        for name in exceptions {
-            let elements = &self.expander.circuit.elements;
-            if !elements.iter().any(|element| matches(&name.text, &element.name)) {
-                let known = elements.iter().map(|element| element.name.as_str());
-                let fault = unknown(name, "element", nearest(&name.text, known));
-                self.expander.faults.push(fault);
+    /// Names that the budget gives and the netlist lacks: elements, grounds, devices and their profiles.
+    fn unused(&mut self, budget: &Budget) {
+        let expander = &*self.expander;
+        let circuit = &expander.circuit;
+        let elements = || circuit.elements.iter().map(|element| element.name.as_str());
+        let devices = || {
+            let op_amps = circuit.op_amps.iter().map(|op_amp| (op_amp.element, op_amp.model.as_str()));
+            let unplaced =
+                circuit.unplaced.iter().map(|unplaced| (unplaced.element, unplaced.model.as_str()));
+            op_amps
+                .chain(unplaced)
+                .flat_map(|(element, model)| [model, circuit.element(element).name.as_str()])
+        };
+        let mut faults = Vec::new();
+        for name in budget.parts.iter().flat_map(|part| &part.matches) {
+            if !elements().any(|element| matches(&name.text, element)) {
+                faults.push(unknown(name, "element", nearest(&name.text, elements())));
             }
         }
+        for (name, used) in budget.absent.iter().zip(&expander.absent_used) {
+            if !used {
+                faults.push(unknown(name, "element", nearest(&name.text, elements())));
+            }
+        }
+        for (name, used) in budget.grounds.iter().zip(&expander.grounds_used) {
+            if !used {
+                let nets = circuit.nets.iter().map(|net| net.name.as_str());
+                faults.push(unknown(name, "net", nearest(&name.text, nets)));
+            }
+        }
+        for choice in &budget.devices {
+            if !devices().any(|device| matches(&choice.name.text, device)) {
+                faults.push(unknown(
+                    &choice.name,
+                    "device or element",
+                    nearest(&choice.name.text, devices()),
+                ));
+            }
+            if let Some(profile) =
+                choice.profile.as_ref().filter(|name| expander.catalogue.named(&name.text).is_none())
+            {
+                let message = format!("no profile is named {}", quote(&profile.text));
+                let fault = Diagnostic::at("unknown-device", Severity::Error, profile.span, message);
+                faults.push(
+                    fault.help(
+                        "name a profile that is embedded or given with --devices, or state `technology:`",
+                    ),
+                );
+            }
+        }
+        self.expander.faults.extend(faults);
+    }
+
+    /// The net of a name that something outside drives; what an op amp drives is computed, not declared.
+    fn driven(&mut self, name: &Name) -> Option<NetId> {
+        let net = self.net(name)?;
+        let circuit = &self.expander.circuit;
+        let Some(op_amp) = circuit.op_amps.iter().find(|op_amp| op_amp.output == net) else {
+            return Some(net);
+        };
+        let message = format!(
+            "expected a net that something outside drives, found {}, the output of {}",
+            quote(&name.text),
+            quote(&op_amp.name)
+        );
+        let mut fault = Diagnostic::at("declared-output", Severity::Error, name.span, message);
+        let span = circuit.element(op_amp.element).span;
+        fault.labels.extend(span.map(|span| Label { span, text: "drives it".to_owned() }));
+        self.expander.faults.push(fault);
+        None
     }
 
     /// The net of a name: a net's own, or `ELEMENT.PIN` with the pin's number or, for an op amp, its role.
@@ -178,10 +237,10 @@ fn role(pin: &str) -> Option<Pin> {
 }
 
 fn unknown(name: &Name, what: &str, nearest: Option<&str>) -> Diagnostic {
-    let message = format!("the netlist has no {what} named `{}`", name.text);
+    let message = format!("the netlist has no {what} named {}", quote(&name.text));
     let fault = Diagnostic::at("unknown-name", Severity::Error, name.span, message);
     match nearest {
-        Some(other) => fault.help(format!("the nearest name is `{other}`")),
+        Some(other) => fault.help(format!("the nearest name is {}", quote(other))),
         None => fault,
     }
 }

@@ -1,28 +1,33 @@
 //! Subcircuits expanded into one flat list of nets and elements.
 
 use crate::budget::Budget;
-use crate::circuit::identify::{Identity, Misfit, identify};
+use crate::circuit::calls::{Call, calls};
+use crate::circuit::identify::{Identity, Misfit, identify, pins_by_name};
 use crate::circuit::scope::{Definitions, Fault, Parameters};
+use crate::circuit::unknown::Undefined;
 use crate::circuit::values::{self, Passive};
-use crate::circuit::{Circuit, Element, ElementId, ElementKind, Net, NetId, OpAmp};
+use crate::circuit::{Circuit, Element, ElementId, ElementKind, Net, NetId, OpAmp, Unplaced};
 use crate::device::{Catalogue, Pin};
 use crate::diagnostic::{Diagnostic, Severity};
 use crate::netlist::{Assignment, Kind, Netlist, Passive as Stated, Scope, Statement, Value, Waveform};
-use crate::source::{Sources, Span, matches};
+use crate::source::{Sources, Span, matches, quote};
 use rustc_hash::FxHashMap;
 use smallvec::SmallVec;
 
 /// Calls may nest this deep.
 const DEPTH: usize = 40;
-/// A board may have this many elements once its subcircuits are expanded.
-const ELEMENTS: usize = 2_000_000;
+/// The names before a name may be this long together, in bytes.
+const LONGEST_PATH: usize = 1_000;
+/// All subcircuits of a board may stand for this many elements once they are expanded. What stands at the
+/// top is bounded by what is read.
+const OPENED: u64 = 200_000;
 
 /// Expands a netlist while nets and elements are collected.
 pub(super) struct Expander<'a> {
     pub(super) sources: &'a Sources,
     netlist: &'a Netlist,
     pub(super) budget: &'a Budget,
-    catalogue: &'a Catalogue,
+    pub(super) catalogue: &'a Catalogue,
     definitions: Definitions,
     pub(super) circuit: Circuit,
     pub(super) faults: Vec<Diagnostic>,
@@ -31,7 +36,15 @@ pub(super) struct Expander<'a> {
     pub(super) joined: Vec<NetId>,
     known: FxHashMap<String, Option<Identity>>,
     buffer: String,
-    full: bool,
+    calls: Vec<Call>,
+    /// Elements that calls at the top stand for.
+    opened: u64,
+    /// Which names under the budget's `absent` match an element.
+    pub(super) absent_used: Vec<bool>,
+    /// Which names under the budget's `grounds` a statement uses.
+    pub(super) grounds_used: Vec<bool>,
+    /// Calls that nothing defines and no profile knows.
+    pub(super) undefined: Vec<Undefined>,
 }
 
 /// One level while it is expanded: where its names lead.
@@ -53,19 +66,25 @@ impl<'a> Expander<'a> {
         budget: &'a Budget,
         catalogue: &'a Catalogue,
     ) -> Self {
+        let definitions = Definitions::of(sources, netlist);
+        let (calls, faults) = calls(sources, netlist, &definitions, budget, catalogue);
         let mut expander = Expander {
             sources,
             netlist,
             budget,
             catalogue,
-            definitions: Definitions::of(sources, netlist),
+            definitions,
             circuit: Circuit::default(),
-            faults: Vec::new(),
+            faults,
             names: FxHashMap::default(),
             joined: Vec::new(),
             known: FxHashMap::default(),
             buffer: String::new(),
-            full: false,
+            calls,
+            opened: 0,
+            absent_used: vec![false; budget.absent.len()],
+            grounds_used: vec![false; budget.grounds.len()],
+            undefined: Vec::new(),
         };
         let ground = expander.add_net("0".to_owned(), None);
         expander.circuit.nets[0].ground = true;
@@ -151,6 +170,11 @@ impl<'a> Expander<'a> {
         if let Some(net) = self.names.get(self.buffer.as_str())
             && (level.path.is_empty() || net.0 == 0 || self.is_global(text))
         {
+            if net.0 == 0 {
+                let used =
+                    self.budget.grounds.iter().position(|ground| ground.text.eq_ignore_ascii_case(text));
+                used.into_iter().for_each(|at| self.grounds_used[at] = true);
+            }
             return *net;
         }
         let name = format!("{}{text}", level.path);
@@ -168,27 +192,12 @@ impl<'a> Expander<'a> {
     }
 
     fn scope(&mut self, scope: &'a Scope, level: &Level) {
-        for statement in &scope.elements {
-            if self.full {
-                return;
-            }
-            self.statement(statement, level);
-        }
+        scope.elements.iter().for_each(|statement| self.statement(statement, level));
     }
 
     fn statement(&mut self, statement: &'a Statement, level: &Level) {
         let name = format!("{}{}", level.path, self.sources.text(statement.name));
-        if self.budget.absent.iter().any(|absent| matches(&absent.text, &name)) {
-            return;
-        }
-        if self.circuit.elements.len() >= ELEMENTS {
-            self.full = true;
-            self.faults.push(Diagnostic::at(
-                "too-large",
-                Severity::Error,
-                statement.span,
-                format!("the board has more than {ELEMENTS} elements once its subcircuits are expanded; the rest isn't read"),
-            ));
+        if self.is_absent(&name) {
             return;
         }
         let nets: SmallVec<[NetId; 4]> = statement.nodes.iter().map(|word| self.net(*word, level)).collect();
@@ -221,6 +230,18 @@ impl<'a> Expander<'a> {
         self.add_element(Element { name, nets, kind, span: Some(statement.span) });
     }
 
+    /// Whether the budget says that an element isn't fitted; remembers which of its names were of use.
+    fn is_absent(&mut self, name: &str) -> bool {
+        let mut absent = false;
+        for (at, pattern) in self.budget.absent.iter().enumerate() {
+            if matches(&pattern.text, name) {
+                self.absent_used[at] = true;
+                absent = true;
+            }
+        }
+        absent
+    }
+
     fn value(&mut self, value: Value, level: &Level) -> Option<f64> {
         level.parameters.value(self.sources, value).map_err(|fault| self.report(vec![fault])).ok()
     }
@@ -228,7 +249,8 @@ impl<'a> Expander<'a> {
     fn drive(&mut self, waveform: &Waveform, level: &Level) -> crate::circuit::Drive {
         let dc = waveform.dc.and_then(|value| self.value(value, level));
         let moves = waveform.ac || waveform.unknown || waveform.span.is_some();
-        values::drive(dc, waveform.span, moves)
+        let unknown = dc.is_none() && (waveform.unknown || waveform.dc.is_some());
+        values::drive(dc, waveform.span, moves, unknown)
     }
 
     /// Two resistors at half travel; the second node is the wiper.
@@ -273,29 +295,52 @@ impl<'a> Expander<'a> {
         match self.identity(&name, text, nets.len(), found) {
             Ok(Some(identity)) => self.op_amp(statement, name, text, &nets, identity),
             Ok(None) => match found {
-                Some(index) if self.opens(index, 0) => {
+                Some(index) if self.calls[index].opens => {
                     self.open(statement, name, nets, parameters, index, level)
                 }
-                _ => {
-                    self.add_element(Element {
-                        name,
-                        nets,
-                        kind: ElementKind::Unmodelled,
-                        span: Some(statement.span),
-                    });
+                Some(index) => match pins_by_name(&self.ports(index)).filter(|pins| pins.len() == nets.len())
+                {
+                    Some(pins) => {
+                        let identity = Identity { profile: None, technology: None, pins };
+                        self.op_amp(statement, name, text, &nets, identity);
+                    }
+                    None => {
+                        self.unmodelled(statement, name, nets);
+                    }
+                },
+                None => {
+                    let element = self.unmodelled(statement, name, nets);
+                    self.undefined.push((element, model));
                 }
             },
-            Err(misfit) => {
-                let fault = self.misfit(statement, model, &name, misfit);
-                self.faults.push(fault);
-                self.add_element(Element {
-                    name,
-                    nets,
-                    kind: ElementKind::Unmodelled,
-                    span: Some(statement.span),
-                });
+            Err(Misfit(expected)) => {
+                let found = nets.len();
+                let reason =
+                    format!("it is called with {found} nodes, the pin order of {text} has {expected}");
+                self.unplaced(statement, name, &nets, text, reason);
             }
         }
+    }
+
+    /// An op amp that can't be placed: kept as an unmodelled part, and counted.
+    fn unplaced(&mut self, statement: &Statement, name: String, nets: &[NetId], model: &str, reason: String) {
+        let cure = format!(
+            "budget: devices: {{ {model}: {{ pins: [...] }} }} gives the order of its {} nodes",
+            nets.len()
+        );
+        let element = self.unmodelled(statement, name, nets.into());
+        self.circuit.unplaced.push(Unplaced { element, model: model.to_owned(), reason, cure });
+    }
+
+    fn unmodelled(&mut self, statement: &Statement, name: String, nets: SmallVec<[NetId; 4]>) -> ElementId {
+        let span = Some(statement.span);
+        self.add_element(Element { name, nets, kind: ElementKind::Unmodelled, span })
+    }
+
+    /// Port names of a definition.
+    fn ports(&self, index: usize) -> Vec<&'a str> {
+        let (sources, netlist) = (self.sources, self.netlist);
+        netlist.subcircuits[index].ports.iter().map(|port| sources.text(*port)).collect()
     }
 
     /// What a call is; the answer for a model name with a count of nodes is remembered where no
@@ -313,31 +358,10 @@ impl<'a> Expander<'a> {
         {
             return Ok(known.clone());
         }
-        let ports: Option<Vec<&str>> = found.map(|index| {
-            self.netlist.subcircuits[index].ports.iter().map(|port| self.sources.text(*port)).collect()
-        });
+        let ports = found.map(|index| self.ports(index));
         let identity = identify(self.catalogue, self.budget, (name, model), nodes, ports.as_deref())?;
         self.known.insert(key, identity.clone());
         Ok(identity)
-    }
-
-    fn misfit(&self, statement: &Statement, model: Span, name: &str, misfit: Misfit) -> Diagnostic {
-        let model_name = self.sources.text(model);
-        match misfit {
-            Misfit::NoProfile(at) => {
-                let choice = &self.budget.devices[at];
-                let profile = choice.profile.as_ref().unwrap_or(&choice.name);
-                Diagnostic::at("unknown-device", Severity::Error, profile.span, format!("no profile is named `{}`", profile.text))
-                    .help("name a profile that is embedded or given with --devices, or state `technology:`")
-            }
-            Misfit::Count(found, expected) => Diagnostic::at(
-                "pin-map",
-                Severity::Error,
-                statement.span,
-                format!("{name} calls {model_name} with {found} nodes, its pin order has {expected}; it is not analysed"),
-            )
-            .help(format!("budget: devices: {{ {model_name}: {{ pins: [...] }} }} gives the order of the {found} nodes")),
-        }
     }
 
     fn op_amp(
@@ -352,18 +376,8 @@ impl<'a> Expander<'a> {
         let (Some(non_inverting), Some(inverting), Some(output)) =
             (pin(Pin::NonInverting), pin(Pin::Inverting), pin(Pin::Output))
         else {
-            self.faults.push(Diagnostic::at(
-                "pin-map",
-                Severity::Error,
-                statement.span,
-                format!("the pin order of {name} lacks an input or the output; it is not analysed"),
-            ));
-            self.add_element(Element {
-                name,
-                nets: nets.into(),
-                kind: ElementKind::Unmodelled,
-                span: Some(statement.span),
-            });
+            let reason = "its pin order lacks an input or the output".to_owned();
+            self.unplaced(statement, name, nets, model, reason);
             return;
         };
         let index = self.circuit.op_amps.len() as u32;
@@ -388,37 +402,6 @@ impl<'a> Expander<'a> {
         });
     }
 
-    /// Whether a definition is opened: it calls an op amp, or holds linear elements alone.
-    fn opens(&self, index: usize, depth: usize) -> bool {
-        if depth > DEPTH {
-            return true;
-        }
-        let body = &self.netlist.subcircuits[index].body;
-        let mut linear = true;
-        for statement in &body.elements {
-            match &statement.kind {
-                Kind::Resistor(_)
-                | Kind::Capacitor(_)
-                | Kind::Inductor(_)
-                | Kind::VoltageSource(_)
-                | Kind::CurrentSource(_)
-                | Kind::VoltageGain(_) => {}
-                Kind::Call { model, .. } => {
-                    let name = self.sources.text(*model);
-                    let op_amp = self.catalogue.find(name).is_some()
-                        || self.budget.devices.iter().any(|choice| matches(&choice.name.text, name));
-                    let inner = self.definitions.find(self.netlist, Some(index), name);
-                    if op_amp || inner.is_some_and(|inner| self.opens(inner, depth + 1)) {
-                        return true;
-                    }
-                    linear = false;
-                }
-                _ => linear = false,
-            }
-        }
-        linear
-    }
-
     fn open(
         &mut self,
         statement: &'a Statement,
@@ -429,26 +412,34 @@ impl<'a> Expander<'a> {
         level: &Level,
     ) {
         let definition = &self.netlist.subcircuits[index];
-        let fault = if level.depth >= DEPTH {
-            Some((
-                "recursive-subcircuit",
-                format!("calls nest more than {DEPTH} deep at {name}; does the definition call itself?"),
+        let call = self.calls[index];
+        let path = format!("{name}.");
+        let larger = self.opened.saturating_add(call.weight);
+        let fault = if OPENED < larger {
+            Some(format!(
+                "expected at most {OPENED} elements in all subcircuits together once they are expanded, found more"
             ))
-        } else if definition.ports.len() != nets.len() {
-            let (found, expected) = (nets.len(), definition.ports.len());
-            Some(("pin-count", format!("{name} has {found} nodes, its definition has {expected} ports")))
+        } else if DEPTH <= level.depth || LONGEST_PATH < path.len() {
+            Some(format!(
+                "calls nest more than {DEPTH} deep, or their names grow longer than {LONGEST_PATH} bytes"
+            ))
         } else {
             None
         };
-        if let Some((kind, message)) = fault {
-            self.faults.push(Diagnostic::at(kind, Severity::Error, statement.span, message));
-            self.add_element(Element {
-                name,
-                nets,
-                kind: ElementKind::Unmodelled,
-                span: Some(statement.span),
-            });
+        if let Some(reason) = &fault {
+            let message = format!(
+                "{reason}; {} is kept as an unmodelled part",
+                quote(self.sources.text(statement.name))
+            );
+            self.faults.push(Diagnostic::at("too-large", Severity::Error, statement.span, message));
+        }
+        // A circle of calls and a count of pins that differs are faults of their own already.
+        if fault.is_some() || call.endless || definition.ports.len() != nets.len() {
+            self.unmodelled(statement, name, nets);
             return;
+        }
+        if level.depth == 0 {
+            self.opened = larger;
         }
         let ports = definition.ports.iter().map(|port| self.sources.text(*port).to_ascii_lowercase());
         let ports = ports.zip(nets).collect();
@@ -458,7 +449,6 @@ impl<'a> Expander<'a> {
         parameters.assign(self.sources, given, Some(&level.parameters), &mut faults);
         parameters.assign(self.sources, &definition.body.parameters, None, &mut faults);
         self.report(faults);
-        let path = format!("{name}.");
         let inner = Level { path: &path, ports, definition: Some(index), parameters, depth: level.depth + 1 };
         self.scope(&definition.body, &inner);
     }

@@ -19,19 +19,13 @@ pub(super) struct Identity {
     pub pins: Vec<Pin>,
 }
 
-/// Why a call that means an op amp can't be taken as one.
-#[derive(Debug, Clone, PartialEq)]
-pub(super) enum Misfit {
-    /// The budget names a profile that isn't there; its place in `devices`.
-    NoProfile(usize),
-    /// Nodes on the call, pins expected.
-    Count(usize, usize),
-}
+/// How many pins an order has that doesn't fit the nodes of its call.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(super) struct Misfit(pub usize);
 
-/// What the budget says of a model name or designator: its place in `devices`.
-fn choice<'b>(budget: &'b Budget, designator: &str, model: &str) -> Option<(usize, &'b DeviceChoice)> {
-    let by =
-        |name: &str| budget.devices.iter().enumerate().rfind(|(_, choice)| matches(&choice.name.text, name));
+/// What the budget says of a model name or designator.
+fn choice<'b>(budget: &'b Budget, designator: &str, model: &str) -> Option<&'b DeviceChoice> {
+    let by = |name: &str| budget.devices.iter().rfind(|choice| matches(&choice.name.text, name));
     by(designator).or_else(|| by(model))
 }
 
@@ -43,23 +37,25 @@ pub(super) fn identify(
     nodes: usize,
     ports: Option<&[&str]>,
 ) -> Result<Option<Identity>, Misfit> {
-    let choice = choice(budget, designator, model);
-    let profile = match choice.and_then(|(at, choice)| Some((at, choice.profile.as_ref()?))) {
-        Some((at, name)) => Some(catalogue.named(&name.text).ok_or(Misfit::NoProfile(at))?),
-        None => catalogue.find(model),
+    let declared = choice(budget, designator, model);
+    let known = catalogue.find(model);
+    // A profile that the budget names and nobody has leaves the device unknown; its pins stay.
+    let profile = match declared.and_then(|choice| choice.profile.as_ref()) {
+        Some(name) => catalogue.named(&name.text),
+        None => known,
     };
-    let declared = choice.map(|(_, choice)| choice);
     if profile.is_none() && declared.is_none() {
         return Ok(None);
     }
     let named = declared.and_then(|choice| choice.pins.clone());
     let order = named.or_else(|| ports.and_then(pins_by_name)).unwrap_or_else(|| {
         profile
+            .or(known)
             .map(|at| catalogue.profiles[at].pins.clone())
             .filter(|pins| !pins.is_empty())
             .unwrap_or(USUAL.into())
     });
-    let pins = fit(order, nodes).map_err(|expected| Misfit::Count(nodes, expected))?;
+    let pins = fit(order, nodes).map_err(Misfit)?;
     let technology =
         declared.and_then(|choice| choice.technology).or(profile.map(|at| catalogue.profiles[at].technology));
     Ok(Some(Identity { profile, technology, pins }))

@@ -58,7 +58,11 @@ impl<'a> Parameters<'a> {
                 Ok(value) => {
                     self.values.insert(name, value);
                 }
-                Err(fault) => faults.push(fault),
+                // Without a value it still hides a parameter of that name further out.
+                Err(fault) => {
+                    self.values.insert(name, f64::NAN);
+                    faults.push(fault);
+                }
             }
         }
     }

@@ -4,40 +4,66 @@ use crate::circuit::declare::Declared;
 use crate::circuit::values::stated_voltage;
 use crate::circuit::{Circuit, CurrentInput, Drive, ElementKind, NetId, Potential, Tie};
 use crate::device::Rank;
+use crate::diagnostic::{Diagnostic, Severity};
+use crate::source::quote;
 use rustc_hash::FxHashMap;
 use std::collections::VecDeque;
 
-/// Walks from ground through voltage sources, reversed and chained ones included.
-pub(super) fn sources(circuit: &mut Circuit) {
+/// Walks from ground through voltage sources, reversed and chained ones included; sources that close a loop
+/// of sources are faults.
+pub(super) fn sources(circuit: &mut Circuit) -> Vec<Diagnostic> {
     circuit.ties = vec![None; circuit.nets.len()];
     circuit.potentials = vec![None; circuit.nets.len()];
-    let mut on_net: FxHashMap<NetId, Vec<(NetId, Drive, f64)>> = FxHashMap::default();
-    for element in &circuit.elements {
+    let mut on_net: FxHashMap<NetId, Vec<(usize, NetId, Drive, f64)>> = FxHashMap::default();
+    for (at, element) in circuit.elements.iter().enumerate() {
         if let (ElementKind::VoltageSource(drive), [plus, minus]) = (&element.kind, element.nets.as_slice()) {
-            on_net.entry(*minus).or_default().push((*plus, *drive, 1.0));
-            on_net.entry(*plus).or_default().push((*minus, *drive, -1.0));
+            on_net.entry(*minus).or_default().push((at, *plus, *drive, 1.0));
+            on_net.entry(*plus).or_default().push((at, *minus, *drive, -1.0));
         }
     }
     let zero = Potential { nominal: 0.0, range: Some((0.0, 0.0)), rank: Rank::Guaranteed };
-    let mut queue = VecDeque::from([(Circuit::GROUND, zero, Tie::Source)]);
+    let mut queue = VecDeque::from([(Circuit::GROUND, Some(zero), Tie::Source)]);
     let mut seen = vec![false; circuit.nets.len()];
+    let mut walked = vec![false; circuit.elements.len()];
+    let mut faults = Vec::new();
     seen[0] = true;
     while let Some((net, from, tie)) = queue.pop_front() {
-        for (other, drive, sign) in on_net.get(&net).map_or(&[][..], Vec::as_slice) {
-            if std::mem::replace(&mut seen[other.0 as usize], true) {
+        for (element, other, drive, sign) in on_net.get(&net).map_or(&[][..], Vec::as_slice) {
+            if std::mem::replace(&mut walked[*element], true) {
                 continue;
             }
-            let tie = if drive.moves { Tie::MovingSource } else { tie };
-            let potential = step(from, *drive, *sign);
-            circuit.ties[other.0 as usize] = Some(tie);
-            circuit.potentials[other.0 as usize] = Some(potential);
+            let potential = from.and_then(|from| step(from, *drive, *sign));
+            let place = other.0 as usize;
+            if std::mem::replace(&mut seen[place], true) {
+                let there = if place == 0 { Some(zero) } else { circuit.potentials[place] };
+                faults.extend(closed(circuit, *element, there.is_some() && there == potential));
+                continue;
+            }
+            let tie = if drive.moves || drive.unknown { Tie::MovingSource } else { tie };
+            circuit.ties[place] = Some(tie);
+            circuit.potentials[place] = potential;
             queue.push_back((*other, potential, tie));
         }
     }
+    faults
 }
 
-/// The potential behind a source, seen from the net before it.
-fn step(from: Potential, drive: Drive, sign: f64) -> Potential {
+/// A source that closes a loop of voltage sources: no fault where it says the same as the others.
+fn closed(circuit: &Circuit, element: usize, same: bool) -> Option<Diagnostic> {
+    let element = &circuit.elements[element];
+    let (severity, but) = match same {
+        true => (Severity::Note, "the others say the same"),
+        false => (Severity::Error, "the others say something else and are taken"),
+    };
+    let message = format!("{} closes a loop of voltage sources; {but}", quote(&element.name));
+    Some(Diagnostic::at("source-loop", severity, element.span?, message))
+}
+
+/// The potential behind a source, seen from the net before it; `None` where the source's value can't be told.
+fn step(from: Potential, drive: Drive, sign: f64) -> Option<Potential> {
+    if drive.unknown && drive.span.is_none() {
+        return None;
+    }
     let middle = drive.span.map(|(low, high)| (low + high) / 2.0);
     let own = drive.span.or(if drive.moves {
         None
@@ -49,7 +75,7 @@ fn step(from: Potential, drive: Drive, sign: f64) -> Potential {
         let (a, b) = (sign * least, sign * greatest);
         (low + a.min(b), high + a.max(b))
     });
-    Potential { nominal, range, rank: Rank::Guaranteed }
+    Some(Potential { nominal, range, rank: Rank::Guaranteed })
 }
 
 /// Current sources of the netlist as currents that feed nets. A current that the budget declares for the

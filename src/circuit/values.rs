@@ -53,15 +53,17 @@ pub(super) fn part(
 pub(super) fn resistor(part: Part) -> ElementKind {
     match part.value {
         Some(0.0) => ElementKind::Link,
-        Some(ohms) if ohms > 0.0 && ohms.is_finite() => ElementKind::Resistor(part),
+        Some(ohms) if 0.0 < ohms && ohms.is_finite() && (1.0 / ohms).is_finite() => {
+            ElementKind::Resistor(part)
+        }
         _ => ElementKind::Resistor(Part { value: None, ..part }),
     }
 }
 
 /// DC value and range of a source whose DC value is `dc`.
-pub(super) fn drive(dc: Option<f64>, span: Option<(f64, f64)>, moves: bool) -> Drive {
-    let finite = |value: &f64| value.is_finite();
-    Drive { dc: dc.filter(finite), span: span.filter(|(low, high)| low <= high), moves }
+pub(super) fn drive(dc: Option<f64>, span: Option<(f64, f64)>, moves: bool, unknown: bool) -> Drive {
+    let unknown = unknown || dc.is_some_and(|value| !value.is_finite());
+    Drive { dc: dc.filter(|_| !unknown), span: span.filter(|(low, high)| low <= high), moves, unknown }
 }
 
 /// Whether a person named a net, as far as its form tells: exporters number nets or build names from

@@ -5,7 +5,7 @@ use crate::device::{Key, Rank};
 use crate::figure::disturbance::Extra;
 use crate::figure::linear::{Linear, axes};
 use crate::figure::stage::Stage;
-use crate::figure::study::{Axis, Quantity, Study, study};
+use crate::figure::study::{Axis, Quantity, study};
 use crate::figure::{Bad, Figure, Item, Kind};
 use crate::solve::{Excitation, Node};
 use smallvec::smallvec;
@@ -21,12 +21,17 @@ pub(super) struct Bound {
     pub net: Option<NetId>,
 }
 
-/// A distance studied: to which end, and its parts.
-pub(super) struct Distance {
-    pub axes: Vec<Axis>,
-    pub items: Vec<Item>,
-    pub found: Study,
+/// A distance with its nominal value and how far it falls in the worst case, to first order.
+pub(super) struct Distance<'b> {
+    linear: Linear<'b>,
+    axes: Vec<Axis>,
+    items: Vec<Item>,
+    nominal: f64,
+    fall: f64,
 }
+
+/// Why a figure is missing where the equations fail away from the nominal values.
+const UNSOLVED: &str = "its equations have no solution at the worst corner";
 
 impl<'b> Stage<'b> {
     /// The figure of a magnitude that disturbances alone make at the output.
@@ -76,7 +81,7 @@ impl<'b> Stage<'b> {
         ])
     }
 
-    /// The distance of a node from an end of the supplies, in a given state of the ports. `key` is the
+    /// A distance before it is studied: the distance of a node from an end of the supplies, in a given state of the ports. `key` is the
     /// distance that must be kept, at an output current of `current`.
     ///
     /// # Errors
@@ -88,7 +93,7 @@ impl<'b> Stage<'b> {
         (key, current): (Key, f64),
         excitation: Excitation<f64>,
         mut extras: Vec<Extra>,
-    ) -> Result<Distance, String> {
+    ) -> Result<Distance<'b>, String> {
         let kept = self.spread(key, current).ok_or_else(|| self.missing(key))?;
         let sign = if bound.high { -1.0 } else { 1.0 };
         extras.extend(self.rail_extras(bound.net.map(|net| (net, -sign))));
@@ -105,17 +110,35 @@ impl<'b> Stage<'b> {
         extras.push(kept_axis);
         let linear = self.reading(node, sign, -sign * bound.rail, excitation, &extras);
         let (axes, items) = with_axes(axes(self.model(), false), &extras);
-        let found = study(&linear, &axes, Bad::Low)
-            .ok_or_else(|| "its equations have no solution at the worst corner".to_owned())?;
-        Ok(Distance { axes, items, found })
+        let point: Vec<f64> = axes.iter().map(|axis| axis.nominal).collect();
+        let mut gradient = vec![0.0; axes.len()];
+        let nominal = linear.at(&point, &mut gradient).ok_or(UNSOLVED)?;
+        let reach = |(slope, axis): (&f64, &Axis)| {
+            (slope * (axis.low - axis.nominal)).min(slope * (axis.high - axis.nominal)).min(0.0)
+        };
+        let fall: f64 = gradient.iter().zip(&axes).map(reach).sum();
+        Ok(Distance { linear, axes, items, nominal, fall })
     }
 
-    /// The figure of the least of several distances.
+    /// The figure of the least of several distances. Only those are studied that to first order could be
+    /// the least: within a quarter of their own fall of the least one.
     pub(super) fn least(&self, kind: Kind, distances: &[Distance], ranges: Rank) -> Figure {
-        let least = distances.iter().min_by(|a, b| a.found.worst.total_cmp(&b.found.worst));
-        let Some(least) = least else { return Figure::unknown(kind, "there is no distance to take") };
-        let nominal = distances.iter().map(|distance| distance.found.nominal).fold(f64::INFINITY, f64::min);
-        let figure = self.figure_of(kind, &least.axes, &least.found, &least.items, false);
+        let lowest =
+            distances.iter().map(|distance| distance.nominal + distance.fall).fold(f64::INFINITY, f64::min);
+        let near = |distance: &&Distance| !(lowest < distance.nominal + distance.fall * 1.25);
+        let studied = distances
+            .iter()
+            .filter(near)
+            .map(|distance| Some((distance, study(&distance.linear, &distance.axes, Bad::Low)?)));
+        let Some(studied) = studied.collect::<Option<Vec<_>>>() else {
+            return Figure::unknown(kind, UNSOLVED);
+        };
+        let least = studied.iter().min_by(|a, b| a.1.worst.total_cmp(&b.1.worst));
+        let Some((least, found)) = least else {
+            return Figure::unknown(kind, "there is no distance to take");
+        };
+        let nominal = distances.iter().map(|distance| distance.nominal).fold(f64::INFINITY, f64::min);
+        let figure = self.figure_of(kind, &least.axes, found, &least.items, false);
         let rests_on = self.device().supply.map_or(ranges, |supply| ranges.max(supply.rank));
         Figure { nominal: Some(nominal), rests_on, ..figure }
     }

@@ -1,7 +1,7 @@
 //! Quantities that are linear in what drives a stage: an output error, a distance to a limit, a current.
 
 use crate::figure::study::{Axis, Quantity};
-use crate::solve::{Excitation, Model, Node, Solved, State, along, values_at};
+use crate::solve::{Excitation, List, Model, Node, Solved, State, along, values_at};
 use smallvec::SmallVec;
 
 /// How a unit of one extra value acts: a list each for currents, errors and port voltages, and directly.
@@ -80,7 +80,7 @@ impl Linear<'_> {
     }
 
     /// Transfers of the reading from every port, with the coefficients of ports that are read directly.
-    pub(super) fn from_ports(&self, solved: &Solved<f64>) -> (Vec<f64>, Vec<f64>, f64) {
+    pub(super) fn from_ports(&self, solved: &Solved<f64>) -> (List<f64>, List<f64>, f64) {
         let coefficients = self.coefficients(solved);
         let weights = solved.adjoint(&coefficients);
         let mut ports = solved.from_ports(&weights);

@@ -138,7 +138,7 @@ impl Stage<'_> {
             Err(_) => board.primaries[primary as usize].rest,
         };
         let port = |port| board.row(port).iter().map(|(at, entry)| entry * value(*at)).sum();
-        let mut injections = Vec::new();
+        let mut injections = smallvec::SmallVec::new();
         for ((into, from), at) in board.currents(self.block).zip(&self.cut().currents) {
             let amps = value(board.first_current as u32 + at);
             injections.push((into, amps));
@@ -150,7 +150,7 @@ impl Stage<'_> {
         }
         Excitation {
             ports: self.model().ports.iter().map(port).collect(),
-            errors: Vec::new(),
+            errors: Default::default(),
             injections,
             constant: true,
         }

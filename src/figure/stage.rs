@@ -9,7 +9,8 @@ use crate::figure::{
     bias_error, feedback_loading, gain_error, gain_spread, input_headroom, loop_gain, offset_error,
     output_headroom,
 };
-use crate::solve::{Board, Device, Excitation, Fault, Model, Node, Solved, Values, Weights};
+use crate::solve::{Board, Device, Excitation, Fault, List, Model, Node, Solved, Values, Weights};
+use smallvec::smallvec;
 
 /// What the budget asks of a stage.
 #[derive(Debug, Clone, Default, PartialEq)]
@@ -153,14 +154,14 @@ impl<'b> Stage<'b> {
         match from {
             Main::Port(port) => Excitation::port(ports, port),
             Main::Pair(_, positive, negative) => {
-                let mut excitation = Excitation { ports: vec![0.0; ports], ..Excitation::none() };
+                let mut excitation = Excitation { ports: List::from_elem(0.0, ports), ..Excitation::none() };
                 excitation.ports[positive] = 0.5;
                 excitation.ports[negative] = -0.5;
                 excitation
             }
             Main::Current(at) => {
                 let (into, out_of) = self.current(at);
-                Excitation { injections: vec![(into, 1.0), (out_of, -1.0)], ..Excitation::none() }
+                Excitation { injections: smallvec![(into, 1.0), (out_of, -1.0)], ..Excitation::none() }
             }
         }
     }
@@ -293,10 +294,16 @@ pub fn explain(circuit: &Circuit, layout: &Layout, fault: &Fault) -> String {
     let op_amp = |at: &u32| &circuit.op_amps[*at as usize];
     match fault {
         Fault::NoPath(at) => format!("no DC path to the input on net {}", net(at)),
-        Fault::NoValue(at) => format!("{} has no value", circuit.element(*at).name),
+        Fault::NoValue(at) => format!("{} has no value that can be used", circuit.element(*at).name),
+        Fault::ShortLoop(at) => format!(
+            "{} closes a loop of voltage sources or inductors, or ties two held voltages together",
+            circuit.element(*at).name
+        ),
         Fault::UnknownDevice(at) => format!("unknown device {} ({})", op_amp(at).model, op_amp(at).name),
         Fault::NoGain(at) => format!("the profile of {} gives no open-loop gain", op_amp(at).name),
-        Fault::TooLarge(size) => format!("its block has {size} unknowns, too many to solve together"),
+        Fault::TooLarge(size) => {
+            format!("its block has {size} unknowns or resistors, too many to solve together")
+        }
         Fault::Singular(Some(at)) => format!("its equations have no single solution at net {}", net(at)),
         Fault::Singular(None) => "its equations have no single solution".to_owned(),
         Fault::NoTwin(Some(at)) if matches!(layout.role(*at), Role::Output(_)) => {

@@ -75,7 +75,8 @@ pub(super) fn study(quantity: &dyn Quantity, axes: &[Axis], bad: Bad) -> Option<
     };
     let (worst, corner) = if worse { found } else { (nominal, start) };
     let base_point: Vec<f64> = axes.iter().map(|axis| axis.base).collect();
-    let base = quantity.at(&base_point, &mut gradient)?;
+    let from_nominal = axes.iter().all(|axis| axis.base == axis.nominal);
+    let base = if from_nominal { nominal } else { quantity.at(&base_point, &mut gradient)? };
     let effects = along(quantity, &base_point, &corner)?;
     Some(Study { nominal, base, worst, effects, corner })
 }

@@ -4,12 +4,12 @@ use super::fault::{Faults, shown};
 use super::name::{name_hash, name_order, same_name};
 use super::{Kind, Model, Netlist, Scope, Statement, Word, settle};
 use crate::diagnostic::{Diagnostic, Label, Severity};
-use crate::source::Sources;
+use crate::source::{FileId, Sources};
 use std::cmp::Ordering;
 
 /// Checks a whole netlist and settles what depends on later lines.
-pub(super) fn finish(netlist: &mut Netlist, sources: &Sources, faults: &mut Faults) {
-    empty(netlist, faults, sources);
+pub(super) fn finish(netlist: &mut Netlist, sources: &Sources, file: FileId, faults: &mut Faults) {
+    empty(netlist, file, faults);
     let index = Index::new(netlist, sources);
     pin_counts(netlist, &index, sources, faults);
     settle::passives(netlist, &index, sources, faults);
@@ -114,7 +114,7 @@ fn around(netlist: &Netlist, level: Level) -> impl Iterator<Item = Level> + '_ {
 }
 
 /// A file that says nothing is a fault, unless another fault says why.
-fn empty(netlist: &Netlist, faults: &mut Faults, sources: &Sources) {
+fn empty(netlist: &Netlist, file: FileId, faults: &mut Faults) {
     let top = &netlist.top;
     let holds = !top.elements.is_empty()
         || !top.models.is_empty()
@@ -122,9 +122,7 @@ fn empty(netlist: &Netlist, faults: &mut Faults, sources: &Sources) {
         || !netlist.subcircuits.is_empty()
         || !netlist.includes.is_empty();
     if !holds && faults.list.is_empty() {
-        let file = crate::source::FileId(0);
-        let end = sources.file(file).text.len() as u32;
-        let span = Word { file, start: end, end };
+        let span = Word { file, start: 0, end: 0 };
         faults.error("empty-netlist", span, "expected elements, found none");
     }
 }

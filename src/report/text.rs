@@ -55,11 +55,14 @@ fn write_board(paper: &mut Paper, board: &BoardReport, sources: &Sources) {
 /// What the verdict rests on: the budget, and what stands in for what it doesn't say.
 fn write_basis(paper: &mut Paper, board: &BoardReport) {
     paper.blank();
+    let subject = board.name.as_ref().map_or(String::new(), |name| format!("{name}, "));
     match &board.budget {
-        Some(path) => paper.paragraph("judged by ", "  ", path),
-        None => {
-            paper.paragraph("", "", "no budget: signals, rails and limits are those assumed for any board")
-        }
+        Some(path) => paper.paragraph("", "  ", &format!("{subject}judged by {path}")),
+        None => paper.paragraph(
+            "",
+            "  ",
+            "no budget: signals and rails are inferred, the limits are the common ones",
+        ),
     }
     if board.assumed.is_empty() {
         return;

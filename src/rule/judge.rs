@@ -226,18 +226,20 @@ fn finding(
             "{}{space}{topology}: {} is {number} {case}, {verdict}{assumed}",
             subject.id, doc.title
         ),
-        cure: Some(cure(subject, figure, worst, limit, data)),
+        cure: Some(cure(subject, figure, (worst, limit, by), data)),
         waived: None,
         labels: labels(subject, figure),
     }
 }
 
-/// What must change and which way, led by the item with the largest share.
-fn cure(subject: &Subject, figure: &Figure, worst: f64, limit: f64, data: Rank) -> String {
+/// What must change and which way, led by the item with the largest share. Where a nominal value that is
+/// no error breaks the limit, shares of the spread explain nothing, and none is named.
+fn cure(subject: &Subject, figure: &Figure, (worst, limit, by): (f64, f64, By), data: Rank) -> String {
     let shares = figure.shares();
     let lines = figure.ledger.iter().zip(&shares).filter_map(|(line, share)| Some((line, (*share)?)));
     let with_worst = lines.filter(|(line, _)| pushes(figure, line.effect, worst));
-    let leading = with_worst.max_by(|a, b| a.1.total_cmp(&b.1));
+    let leading =
+        with_worst.max_by(|a, b| a.1.total_cmp(&b.1)).filter(|_| by == By::Worst || !spreads(figure));
     let doc = figure.kind.doc();
     let short = match doc.bad {
         Bad::Low => limit - worst,
@@ -246,21 +248,44 @@ fn cure(subject: &Subject, figure: &Figure, worst: f64, limit: f64, data: Rank) 
     let mut text = String::new();
     if let Some((line, share)) = leading {
         let name = line.item.label(subject.circuit);
-        text = format!("{name} makes {} of it; ", percent(share));
-        if 0.0 < short && short < line.effect.abs() {
+        let makes = if line.item == Item::Values { "make" } else { "makes" };
+        let whole = if spreads(figure) { "the spread" } else { "it" };
+        text = format!("{name} {makes} {} of {whole}", portion(share));
+        if 0.0 < short && short < line.effect.abs() && line.item != Item::Values {
             let factor = line.effect.abs() / (line.effect.abs() - short);
-            text = format!(
-                "{name} makes {} of it and must act {} times less; ",
-                percent(share),
-                show(factor, Unit::One)
-            );
+            text.push_str(&format!(" and must act {} times less", show(factor, Unit::One)));
         }
+        text.push_str("; ");
     }
-    text.push_str(doc.cure);
+    text.push_str(remedy(figure.kind, leading.map(|(line, _)| line.item)));
     if data == Rank::Assumed {
         text.push_str(&format!("; declare {} to decide", deciding(subject, figure)));
     }
     text
+}
+
+/// What to do about a figure; against tolerances and values more loop gain is of no use.
+fn remedy(kind: Kind, leading: Option<Item>) -> &'static str {
+    match (kind, leading) {
+        (Kind::GainError, Some(Item::Values)) => {
+            "choose resistors whose ratio gives the intended gain, or correct the gain that the budget intends"
+        }
+        (Kind::GainError, Some(Item::Resistor(_) | Item::Group(_))) => {
+            "take resistors of closer tolerance, or a matched network"
+        }
+        _ => kind.doc().cure,
+    }
+}
+
+/// Whether a figure's ledger starts from a nominal value, so that its shares are shares of the spread from
+/// there to the worst case.
+fn spreads(figure: &Figure) -> bool {
+    figure.ledger.first().is_some_and(|line| line.item == Item::Nominal && line.effect != 0.0)
+}
+
+/// A share as sentences show it.
+fn portion(share: f64) -> String {
+    format!("{:.1} %", share * 100.0)
 }
 
 /// Whether an effect pushes a figure towards its worst value.
@@ -299,10 +324,11 @@ fn labels(subject: &Subject, figure: &Figure) -> Vec<Label> {
         if share < LEAST_SHARE {
             continue;
         }
-        let text = match line.item {
-            Item::OpAmp(_, what) => format!("{what} {}", percent(share)),
-            _ => percent(share),
+        let what = match line.item {
+            Item::OpAmp(_, what) => what,
+            _ => "tolerance",
         };
+        let text = format!("{what} {}", portion(share));
         match found.iter_mut().find(|(known, ..)| *known == element) {
             Some((_, sum, texts)) => {
                 *sum += share;
@@ -313,6 +339,12 @@ fn labels(subject: &Subject, figure: &Figure) -> Vec<Label> {
     }
     found.sort_by(|a, b| b.1.total_cmp(&a.1));
     found.truncate(MOST);
+    if spreads(figure) {
+        found
+            .iter_mut()
+            .filter_map(|(.., texts)| texts.last_mut())
+            .for_each(|text| text.push_str(" of the spread"));
+    }
     let own = subject.circuit.op_amps[subject.op_amp as usize].element;
     if !found.iter().any(|(element, ..)| *element == own) {
         found.push((own, 0.0, vec!["this stage".to_owned()]));

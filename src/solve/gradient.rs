@@ -1,14 +1,15 @@
 //! Sensitivities: one forward and one adjoint solution give the effect of every value.
 
-use crate::solve::{Node, Scalar, Solved, State, Weights};
+use crate::solve::{List, Node, Scalar, Solved, State, Weights};
+use smallvec::SmallVec;
 
 /// What a quantity gains for a unit of each value.
 #[derive(Debug, Clone, Default)]
 pub struct Sensitivity<T> {
     /// To 1/A, 1/Rid, 1/Rcm and Ro of each amplifier, in the network's order.
-    pub amps: Vec<[T; 4]>,
+    pub amps: SmallVec<[[T; 4]; 2]>,
     /// To each branch's conductance, per siemens.
-    pub siemens: Vec<T>,
+    pub siemens: List<T>,
 }
 
 impl<T: Scalar> Solved<'_, T> {
@@ -34,8 +35,8 @@ impl<T: Scalar> Solved<'_, T> {
     }
 
     /// The current that leaves each member's output.
-    pub fn leaving(&self, state: &State<T>) -> Vec<T> {
-        let mut leaving = vec![T::zero(); self.network.members];
+    pub fn leaving(&self, state: &State<T>) -> List<T> {
+        let mut leaving = List::from_elem(T::zero(), self.network.members);
         let mut add = |node: Node, amps: T| {
             if let Node::Unknown(at) = node
                 && let Some(member) = self.member_at[at as usize]

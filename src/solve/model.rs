@@ -5,6 +5,7 @@ use crate::circuit::{Circuit, ElementId, ElementKind, NetId};
 use crate::device::Rank;
 use crate::solve::device::Device;
 use crate::solve::parameter::{Parameter, What};
+use crate::solve::shorted::{Joined, Shorted};
 use crate::solve::{AmpStamp, AmpValues, Branch, Drain, Network, Node, Short, Values};
 use petgraph::unionfind::UnionFind;
 use rustc_hash::FxHashMap;
@@ -12,19 +13,23 @@ use smallvec::{SmallVec, smallvec};
 
 /// Blocks with more unknowns than this aren't solved: dense solutions would take minutes.
 const MOST_UNKNOWNS: usize = 400;
+/// Blocks with more resistors than this aren't solved: each has lines of its own in every ledger.
+const MOST_BRANCHES: usize = 4_000;
 
 /// Why a block can't be solved.
 #[derive(Debug, Clone, PartialEq)]
 pub enum Fault {
     /// An input lies on a net without a DC path to anything that sets its voltage.
     NoPath(NetId),
-    /// A resistor of the network has no value.
+    /// A resistor or a floating source of the network has no value that can be used.
     NoValue(ElementId),
+    /// A voltage source or an inductor closes a loop of such elements, or joins two held voltages.
+    ShortLoop(ElementId),
     /// A device of the block is unknown: index into the circuit's op amps.
     UnknownDevice(u32),
     /// The profile of an op amp gives no open-loop gain.
     NoGain(u32),
-    /// Too many unknowns.
+    /// Too many unknowns or resistors: how many.
     TooLarge(usize),
     /// The equations have no single solution; the net at fault where one is known.
     Singular(Option<NetId>),
@@ -102,7 +107,14 @@ impl Model {
 
     /// Builds a block's equations; what is wrong with them is in [`Model::fault`].
     pub fn new(circuit: &Circuit, layout: &Layout, block: &Block, devices: &[Device]) -> Model {
-        let mut builder = Builder { circuit, layout, block, nodes: FxHashMap::default(), fault: None };
+        let mut builder = Builder {
+            circuit,
+            layout,
+            block,
+            nodes: FxHashMap::default(),
+            shorted: Shorted::default(),
+            fault: None,
+        };
         let conducting = builder.conducting();
         let unknown_nets = builder.number(&conducting);
         let mut model = Model {
@@ -127,6 +139,9 @@ impl Model {
         if MOST_UNKNOWNS < model.network.size() {
             builder.fault.get_or_insert(Fault::TooLarge(model.network.size()));
         }
+        if MOST_BRANCHES < model.elements.len() {
+            builder.fault.get_or_insert(Fault::TooLarge(model.elements.len()));
+        }
         groups(circuit, &mut model);
         model.fault = builder.fault;
         model.nodes = builder.nodes;
@@ -139,6 +154,7 @@ struct Builder<'a> {
     layout: &'a Layout,
     block: &'a Block,
     nodes: FxHashMap<NetId, Node>,
+    shorted: Shorted,
     fault: Option<Fault>,
 }
 
@@ -251,11 +267,27 @@ impl Builder<'_> {
                         self.fault.get_or_insert(Fault::NoValue(*id));
                     }
                 },
-                ElementKind::Inductor(_) => model.network.shorts.push(Short { a, b, volts: 0.0 }),
+                ElementKind::Inductor(_) => self.short(model, *id, Short { a, b, volts: 0.0 }),
                 ElementKind::VoltageSource(drive) => {
-                    model.network.shorts.push(Short { a, b, volts: drive.dc.unwrap_or(0.0) });
+                    if drive.unknown {
+                        self.fault.get_or_insert(Fault::NoValue(*id));
+                    }
+                    self.short(model, *id, Short { a, b, volts: drive.dc.unwrap_or(0.0) });
                 }
                 _ => {}
+            }
+        }
+    }
+}
+
+impl Builder<'_> {
+    /// A short that says what others say already is left out, for its current would be undetermined.
+    fn short(&mut self, model: &mut Model, id: ElementId, short: Short) {
+        match self.shorted.join(short) {
+            Joined::New => model.network.shorts.push(short),
+            Joined::Same => {}
+            Joined::Contradiction => {
+                self.fault.get_or_insert(Fault::ShortLoop(id));
             }
         }
     }

@@ -3,7 +3,7 @@
 use crate::block::{AmpId, Role};
 use crate::solve::board::{Board, Row};
 use crate::solve::model::Fault;
-use crate::solve::{Node, Solved};
+use crate::solve::{List, Node, Solved};
 use nalgebra::{DMatrix, DVector, LU};
 use petgraph::algo::tarjan_scc;
 use petgraph::graph::{DiGraph, NodeIndex};
@@ -20,7 +20,7 @@ const MOST_TOGETHER: usize = 400;
 
 /// Transfers of a block's outputs from its ports, and what each has of the block's own.
 struct Step {
-    outputs: Vec<(Vec<f64>, Row)>,
+    outputs: Vec<(List<f64>, Row)>,
     looks_ahead: bool,
 }
 

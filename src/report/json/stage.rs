@@ -59,6 +59,7 @@ struct Figure<'a> {
     #[serde(skip_serializing_if = "Option::is_none")]
     sign: Option<f64>,
     limit: Option<f64>,
+    stated: bool,
     status: &'static str,
     reason: Option<String>,
     data: Rank,
@@ -139,6 +140,7 @@ impl<'a> Figure<'a> {
             rss: figure.rss,
             sign: figure.sign,
             limit: figure.limit,
+            stated: figure.stated,
             status: figure.status.word(),
             reason: figure.reason.clone().or_else(|| not_finite(&numbers)),
             data: figure.data,

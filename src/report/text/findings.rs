@@ -40,7 +40,8 @@ fn write_one(paper: &mut Paper, finding: &Finding, sources: &Sources) {
 /// `error: message (slug)`.
 fn write_headline(paper: &mut Paper, finding: &Finding, word: &str) {
     let first = format!("{} ", paper.accent(&format!("{word}:")));
-    paper.paragraph(&first, "  ", &format!("{} ({})", finding.message, finding.rule));
+    let rest = " ".repeat(word.len() + 2);
+    paper.paragraph(&first, &rest, &format!("{} ({})", finding.message, finding.rule));
 }
 
 /// Notes by their rules, in the order of the first of each.

@@ -45,14 +45,14 @@ fn write_transfers(paper: &mut Paper, title: &str, transfers: &[TransferReport])
     }
     let mut table = Table::new(["input", "unit", ">at", ">ideal", ">actual", ">error"]);
     for transfer in transfers {
-        let none = || "none".to_owned();
+        let unknown = || "unknown".to_owned();
         table.row([
             transfer.input.clone(),
             transfer.unit.to_owned(),
             show(transfer.frequency, Unit::Hertz),
             fine(transfer.ideal, transfer.unit),
-            transfer.actual.map_or_else(none, |actual| fine(actual, transfer.unit)),
-            transfer.error.map_or_else(none, percent),
+            transfer.actual.map_or_else(unknown, |actual| fine(actual, transfer.unit)),
+            transfer.error.map_or_else(unknown, percent),
         ]);
     }
     paper.blank();
@@ -106,10 +106,11 @@ fn write_figure(paper: &mut Paper, figure: &FigureReport) {
 fn limit(figure: &FigureReport) -> String {
     let Some(limit) = figure.limit else { return ", no limit".to_owned() };
     let limit = value(limit, figure.unit, figure.bad);
+    let stated = if figure.stated { ", stated in the budget" } else { "" };
     match figure.bad {
-        Bad::Either => format!(", limit +/- {limit}"),
-        Bad::Low => format!(", limit at least {limit}"),
-        Bad::High => format!(", limit at most {limit}"),
+        Bad::Either => format!(", limit +/- {limit}{stated}"),
+        Bad::Low => format!(", limit at least {limit}{stated}"),
+        Bad::High => format!(", limit at most {limit}{stated}"),
     }
 }
 
@@ -121,7 +122,7 @@ fn write_ledger(paper: &mut Paper, figure: &FigureReport) {
     let mut lines: Vec<&LedgerLine> = figure.ledger.iter().collect();
     let size = |line: &LedgerLine| line.share.map_or(f64::NEG_INFINITY, |share| -share);
     lines.sort_by(|left, right| size(left).total_cmp(&size(right)));
-    let mut table = Table::new([">effect", ">share", "", "of", ""]);
+    let mut table = Table::new([">effect", ">share", "", "item", ""]);
     for line in lines {
         table.row([
             value(line.effect, figure.unit, figure.bad),
@@ -145,8 +146,8 @@ fn total(figure: &FigureReport) -> Option<(f64, &'static str)> {
     let root = figure.ledger.iter().map(|line| line.effect * line.effect).sum::<f64>().sqrt();
     let agrees = |total: f64| (total - worst).abs() <= AGREES * worst.abs();
     match () {
-        _ if agrees(sum) => Some((sum, "the sum, which is the worst case")),
-        _ if agrees(root) => Some((root, "the root of the squares' sum, which is the worst case")),
+        _ if agrees(sum) => Some((sum, "sum: the worst case")),
+        _ if agrees(root) => Some((root, "root of the sum of squares: the worst case")),
         _ => None,
     }
 }

@@ -5,7 +5,7 @@
 
 mod copy;
 
-use super::paper::Paper;
+use super::paper::{Paper, broken};
 use crate::diagnostic::Label;
 use crate::report::harmless::short_path;
 use crate::source::{FileId, Sources};
@@ -98,7 +98,7 @@ fn excerpt(labels: &[&Label], sources: &Sources, width: usize) -> Excerpt {
 /// A label's text in lines that end at the page's edge, where there is room at all.
 fn beside(span: &copy::Moved, room: usize) -> Option<String> {
     let left = room.saturating_sub(span.middle + 5).max(LABEL);
-    (!span.text.is_empty()).then(|| Paper::broken(&span.text, left).join("\n"))
+    (!span.text.is_empty()).then(|| broken(&span.text, left).join("\n"))
 }
 
 /// `board.cir:31:1`.

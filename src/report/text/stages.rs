@@ -30,16 +30,18 @@ pub(super) fn write(paper: &mut Paper, stages: &[StageReport]) {
 
 /// Gain or transresistance of the main transfer, of the twin and as it is.
 fn main_transfer(stage: &StageReport) -> (String, String) {
-    let none = || "none".to_owned();
-    let Some(main) = stage.transfers.first() else { return (none(), none()) };
-    let actual = main.actual.map_or_else(none, |actual| fine(actual, main.unit));
+    let Some(main) = stage.transfers.first() else { return ("none".to_owned(), "none".to_owned()) };
+    let actual = main.actual.map_or_else(|| "unknown".to_owned(), |actual| fine(actual, main.unit));
     (fine(main.ideal, main.unit), actual)
 }
 
-/// The heaviest status and the figures that have it: `broken: gain-error and 2 more`.
+/// The heaviest status and the figures that have it: `broken: gain-error and 2 more`. Where no signal
+/// enters, as in the buffer of a reference, a gain isn't unknown but absent.
 fn worst_figure(figures: &[FigureReport]) -> String {
+    let absent = |figure: &&FigureReport| figure.reason.as_deref() == Some("no signal port");
+    let figures: Vec<&FigureReport> = figures.iter().filter(|figure| !absent(figure)).collect();
     let Some(worst) = figures.iter().map(|figure| figure.status).max() else {
-        return "none computed".to_owned();
+        return "not computed".to_owned();
     };
     if worst == Status::Within {
         return worst.word().to_owned();

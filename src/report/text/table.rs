@@ -8,7 +8,7 @@ use textwrap::core::display_width;
 const GAP: usize = 2;
 
 /// Widest that a cell may be before the page is asked.
-const WIDEST: usize = 48;
+const WIDEST: usize = 60;
 
 /// Narrowest that a column is made.
 const NARROWEST: usize = 6;
@@ -46,7 +46,8 @@ impl<const N: usize> Table<N> {
         }
     }
 
-    /// Widths of the columns; the widest gives way where the page is too narrow.
+    /// Widths of the columns. Where the page is too narrow, the widest column of words gives way, the last one,
+    /// which holds the verdict, after the others; numbers are never cut.
     fn widths(&self, room: usize) -> [usize; N] {
         let mut widths = self.headings.map(display_width);
         for row in &self.rows {
@@ -54,11 +55,13 @@ impl<const N: usize> Table<N> {
                 *width = display_width(cell).max(*width);
             }
         }
-        while room < widths.iter().sum() {
-            let widest = (0..N).filter(|at| !self.right[*at]).max_by_key(|at| widths[*at]);
-            match widest {
-                Some(at) if NARROWEST < widths[at] => widths[at] -= 1,
-                _ => break,
+        for columns in [0..N - 1, N - 1..N] {
+            while room < widths.iter().sum() {
+                let words = columns.clone().filter(|at| !self.right[*at]);
+                match words.max_by_key(|at| widths[*at]) {
+                    Some(at) if NARROWEST < widths[at] => widths[at] -= 1,
+                    _ => break,
+                }
             }
         }
         widths

@@ -40,9 +40,7 @@ fn word(verdict: Verdict) -> &'static str {
 }
 
 fn sentence(board: &BoardReport, room: usize) -> String {
-    let name = board.name.as_ref().map_or(String::new(), |name| format!(" ({name})"));
-    let path = short_path(&board.netlist, room);
-    format!("{path}{name}: {}; {}", found(board), covered(&board.coverage))
+    format!("{}: {}; {}", short_path(&board.netlist, room), found(board), covered(&board.coverage))
 }
 
 /// `2 errors, 1 warning, 3 notes, 1 waived`, without what there is none of.
