@@ -188,8 +188,21 @@ pub struct CurrentInput {
     pub from: NetId,
     /// Range of the current into the net, where known.
     pub range: Option<(f64, f64)>,
+    /// Declared source resistance in parallel, ohm.
+    pub source: Option<f64>,
     /// Where it is written.
     pub span: Option<Span>,
+}
+
+/// A declared source resistance in series with a signal.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct SourceResistance {
+    /// Net of the open-circuit voltage.
+    pub open: NetId,
+    /// Net behind the resistance, which the stage loads.
+    pub loaded: NetId,
+    /// Ohm.
+    pub ohms: f64,
 }
 
 /// A declared differential signal.
@@ -224,6 +237,8 @@ pub struct Circuit {
     pub potentials: Vec<Option<Potential>>,
     /// Currents that feed nets.
     pub currents: Vec<CurrentInput>,
+    /// Declared source resistances of voltages.
+    pub series: Vec<SourceResistance>,
     /// Declared pairs.
     pub pairs: Vec<DeclaredPair>,
     /// Ambient range in degree Celsius, both 25 where undeclared.

@@ -4,7 +4,7 @@ use crate::block::{AmpId, Topology};
 use crate::budget::{Budget, Gain, StageBudget};
 use crate::device::Rank;
 use crate::diagnostic::{Diagnostic, Label, Severity};
-use crate::figure::{Figure, Main, PinVoltages, Requirement, Stage, Transfer};
+use crate::figure::{Figure, LegsFrom, Main, PinVoltages, Requirement, Stage, Transfer};
 use crate::quantity::percent;
 use crate::report::{FigureReport, LedgerLine, PinReport, StageReport, TransferReport};
 use crate::rule::{Finding, Judged, Rule, Status, Subject, judge};
@@ -63,7 +63,13 @@ fn one(
         .iter()
         .filter(|asked| asked.matches.iter().any(|pattern| matches(&pattern.text, &part.name)))
         .collect();
-    let review = stage.review(&requirement(&asked));
+    let mut requirement = requirement(&asked);
+    requirement.legs = match topology {
+        Topology::Difference => LegsFrom::Signals,
+        Topology::Instrumentation => LegsFrom::Nowhere,
+        _ => LegsFrom::Pair,
+    };
+    let review = stage.review(&requirement);
     let device = stage.profile().map_or(part.model.as_str(), |profile| profile.name.as_str());
     let stated: Vec<(String, f64, bool)> = asked
         .iter()
@@ -77,7 +83,10 @@ fn one(
         topology: topology.word(),
         device,
         technology: part.technology,
+        grouped: group.is_some(),
         span: review.span,
+        rated_load: stage.rated_load(),
+        zero_unused: asked.iter().any(|asked| asked.zero_unused),
         stated: &stated,
     };
     let mut findings = Vec::new();

@@ -98,7 +98,7 @@ pub(super) fn currents(circuit: &mut Circuit) {
         let own = drive.span.or(drive.dc.filter(|_| !drive.moves).map(|amps| (amps, amps)));
         let range = own.map(|(a, b)| ((sign * a).min(sign * b), (sign * a).max(sign * b)));
         let name = circuit.nets[into.0 as usize].name.clone();
-        circuit.currents.push(CurrentInput { name, into, from, range, span: element.span });
+        circuit.currents.push(CurrentInput { name, into, from, range, source: None, span: element.span });
     }
 }
 

@@ -60,7 +60,7 @@ impl Quantity for GainError<'_> {
 }
 
 pub(super) fn compute(stage: &Stage, from: Option<Main>, intended: Option<f64>) -> Figure {
-    let Some(from) = from else { return Figure::unknown(Kind::GainError, "no signal port") };
+    let Some(from) = from else { return Figure::absent(Kind::GainError, "no signal port") };
     let quantity = GainError { stage: *stage, from, intended };
     let axes = axes(stage.model(), true);
     match study(&quantity, &axes, Bad::Either) {

@@ -40,7 +40,7 @@ impl Quantity for Spread<'_> {
 }
 
 pub(super) fn compute(stage: &Stage, from: Option<Main>) -> Figure {
-    let Some(from) = from else { return Figure::unknown(Kind::GainSpread, "no signal port") };
+    let Some(from) = from else { return Figure::absent(Kind::GainSpread, "no signal port") };
     let model = stage.model();
     let axes: Vec<Axis> = axes(model, false)
         .into_iter()

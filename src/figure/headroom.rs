@@ -3,7 +3,7 @@
 use crate::circuit::NetId;
 use crate::device::{Key, Rank};
 use crate::figure::disturbance::Extra;
-use crate::figure::linear::{Linear, axes};
+use crate::figure::linear::{Linear, Reading, axes};
 use crate::figure::stage::Stage;
 use crate::figure::study::{Axis, Quantity, study};
 use crate::figure::{Bad, Figure, Item, Kind};
@@ -28,6 +28,8 @@ pub(super) struct Distance<'b> {
     items: Vec<Item>,
     nominal: f64,
     fall: f64,
+    /// Whether it is the distance to the ground end of a single supply.
+    ground: bool,
 }
 
 /// Why a figure is missing where the equations fail away from the nominal values.
@@ -62,8 +64,8 @@ impl<'b> Stage<'b> {
     ) -> Linear<'b> {
         Linear {
             model: self.model(),
-            reading: smallvec![(node, 1.0)],
-            current_from: None,
+            twin: false,
+            reading: Reading::Nodes(smallvec![(node, 1.0)]),
             constant,
             sign,
             excitation,
@@ -117,7 +119,10 @@ impl<'b> Stage<'b> {
             (slope * (axis.low - axis.nominal)).min(slope * (axis.high - axis.nominal)).min(0.0)
         };
         let fall: f64 = gradient.iter().zip(&axes).map(reach).sum();
-        Ok(Distance { linear, axes, items, nominal, fall })
+        let ground = !bound.high
+            && bound.rail == 0.0
+            && bound.net.is_some_and(|net| self.board.circuit.net(net).ground);
+        Ok(Distance { linear, axes, items, nominal, fall, ground })
     }
 
     /// The figure of the least of several distances. Only those are studied that to first order could be
@@ -140,7 +145,9 @@ impl<'b> Stage<'b> {
         let nominal = distances.iter().map(|distance| distance.nominal).fold(f64::INFINITY, f64::min);
         let figure = self.figure_of(kind, &least.axes, found, &least.items, false);
         let rests_on = self.device().supply.map_or(ranges, |supply| ranges.max(supply.rank));
-        Figure { nominal: Some(nominal), rests_on, ..figure }
+        let kept = |distance: &Distance| 0.0 <= distance.nominal + distance.fall;
+        let zero = least.ground && distances.iter().all(|distance| distance.ground || kept(distance));
+        Figure { nominal: Some(nominal), rests_on, zero, ..figure }
     }
 }
 

@@ -132,6 +132,9 @@ impl Stage<'_> {
             sign: None,
             bound: false,
             rests_on: Rank::Guaranteed,
+            absent: false,
+            needed: None,
+            zero: false,
             ledger: lines,
         }
     }

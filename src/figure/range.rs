@@ -163,6 +163,11 @@ impl Stage<'_> {
         spread(self.profile()?, &self.board.catalogue.assumed, key, situation)
     }
 
+    /// The load at which the device's gain and swing are guaranteed, ohm.
+    pub fn rated_load(&self) -> Option<(f64, Rank)> {
+        self.spread(Key::RatedLoad, 0.0).map(|load| (load.nominal, load.rank))
+    }
+
     /// The guaranteed swing at nominal rails under the lightest load: lowest and highest output voltage.
     pub(super) fn guaranteed_swing(&self) -> Option<(f64, f64)> {
         let supply = self.device().supply?;

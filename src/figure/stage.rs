@@ -1,24 +1,40 @@
 //! One stage of a composed board: its main port, its transfers, and the figures in turn.
 
 use crate::block::{AmpId, Block, Layout, Role};
-use crate::circuit::{Circuit, NetId, OpAmp};
+use crate::circuit::{Circuit, NetId, OpAmp, SourceResistance};
 use crate::device::{Profile, Rank};
+use crate::figure::legs::Legs;
 use crate::figure::range::Drive;
 use crate::figure::{Figure, Kind, PinVoltages};
 use crate::figure::{
-    bias_error, feedback_loading, gain_error, gain_spread, input_headroom, loop_gain, offset_error,
-    output_headroom,
+    bias_error, common_error, feedback_resistance, gain_error, gain_spread, input_headroom, input_resistance,
+    loop_gain, offset_error, output_headroom, output_resistance, rated, rejection, resistor_power,
+    source_loading,
 };
 use crate::solve::{Board, Device, Excitation, Fault, List, Model, Node, Solved, Values, Weights};
 use smallvec::smallvec;
 
-/// What the budget asks of a stage.
+/// Where the legs of a stage's rejection are.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
+pub enum LegsFrom {
+    /// A declared pair alone.
+    #[default]
+    Pair,
+    /// A declared pair, else the two signals of a difference stage.
+    Signals,
+    /// None: the stage is one of a pair, and the one behind it is judged.
+    Nowhere,
+}
+
+/// What the budget asks of a stage, and what its name says of it.
 #[derive(Debug, Clone, Default, PartialEq)]
 pub struct Requirement {
     /// Intended gain from the main port, signed.
     pub gain: Option<f64>,
     /// Intended gains by the name of an input.
     pub gains: Vec<(String, f64)>,
+    /// Which legs its rejection is taken from.
+    pub legs: LegsFrom,
 }
 
 /// The port that a stage's transfer is taken from; indices into the block's ports or currents.
@@ -148,6 +164,21 @@ impl<'b> Stage<'b> {
         }
     }
 
+    /// The declared source resistance in front of a port, ohm.
+    pub(super) fn series_resistance(&self, port: usize) -> Option<f64> {
+        self.series(port).map(|series| series.ohms)
+    }
+
+    /// The node behind the declared source resistance of a port.
+    pub(super) fn behind(&self, port: usize) -> Option<Node> {
+        self.model().node(self.series(port)?.loaded)
+    }
+
+    fn series(&self, port: usize) -> Option<&'b SourceResistance> {
+        let net = self.model().ports[port].net;
+        self.board.circuit.series.iter().find(|series| series.open == net)
+    }
+
     /// One unit of an input, the others at 0.
     pub(super) fn unit(&self, from: Main) -> Excitation<f64> {
         let ports = self.model().ports.len();
@@ -199,15 +230,23 @@ impl<'b> Stage<'b> {
         }
         let from = port.map(|transfer| transfer.input.from);
         let intended = port.and_then(|transfer| requirement.intended(&transfer.input.name));
+        let legs = || Legs::of(self, transfers, requirement.legs);
         match kind {
             Kind::GainError => gain_error::compute(self, from, intended),
             Kind::LoopGain => loop_gain::compute(self),
-            Kind::FeedbackLoading => feedback_loading::compute(self, from),
+            Kind::FeedbackResistance => feedback_resistance::compute(self, from),
+            Kind::FeedbackLoading | Kind::OutputCurrent => rated::compute(kind, self, from),
             Kind::BiasError => bias_error::compute(self),
             Kind::OffsetError => offset_error::compute(self, drive),
             Kind::OutputHeadroom => output_headroom::compute(self, drive),
             Kind::InputHeadroom => input_headroom::compute(self, drive),
+            Kind::InputResistance => input_resistance::compute(self, transfers),
+            Kind::SourceLoading => source_loading::compute(self, transfers),
+            Kind::OutputResistance => output_resistance::compute(self),
             Kind::GainSpread => gain_spread::compute(self, from),
+            Kind::Rejection => rejection::compute(self, legs()),
+            Kind::CommonError => common_error::compute(self, legs()),
+            Kind::ResistorPower => resistor_power::compute(self),
         }
     }
 

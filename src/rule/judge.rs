@@ -23,8 +23,14 @@ pub struct Subject<'a> {
     pub device: &'a str,
     /// Its device's technology.
     pub technology: Option<crate::device::Technology>,
+    /// Whether it belongs to an instrumentation amplifier.
+    pub grouped: bool,
     /// Output span, with whether it is declared.
     pub span: Option<(f64, bool)>,
+    /// Rated load of its device, ohm, with its rank.
+    pub rated_load: Option<(f64, Rank)>,
+    /// Whether the budget says that the last millivolts at the rail don't matter.
+    pub zero_unused: bool,
     /// Limits that the budget states: slug, value, whether it is a share of the span.
     pub stated: &'a [(String, f64, bool)],
 }
@@ -53,8 +59,11 @@ pub fn rule<'r>(rules: &'r [Rule], subject: &Subject, slug: &str) -> Option<&'r 
         let any = |patterns: &[String], name: &str| {
             patterns.is_empty() || patterns.iter().any(|pattern| matches(pattern, name))
         };
+        // The stage behind an instrumentation amplifier's pair is judged as the whole amplifier.
+        let whole = subject.grouped && slug == "rejection";
+        let topology = if whole { "instrumentation" } else { subject.topology };
         rule.name == slug
-            && any(&scope.topology, subject.topology)
+            && any(&scope.topology, topology)
             && any(&scope.device, subject.device)
             && any(&scope.designator, subject.id)
             && (scope.technology.is_empty()
@@ -75,7 +84,8 @@ pub fn judge(rules: &[Rule], subject: &Subject, figure: &Figure) -> Judged {
             Some((span, false)) => Ok((share * span, Rank::Assumed)),
             None => Err("the output span is not known: declare the range of its signals".to_owned()),
         },
-        Limit::RatedLoad | Limit::TopOfBand => Err("its limit can't be told".to_owned()),
+        Limit::RatedLoad => subject.rated_load.ok_or_else(|| "the profile gives no rated load".to_owned()),
+        Limit::TopOfBand => Err("its limit can't be told".to_owned()),
     };
     let asked = match stated {
         Some((_, value, true)) => Some(Limit::ShareOfSpan(*value)),
@@ -90,6 +100,13 @@ pub fn judge(rules: &[Rule], subject: &Subject, figure: &Figure) -> Judged {
         data: figure.rests_on,
         finding: None,
     };
+    if figure.absent && figure.worst.is_none() {
+        if !judged.stated {
+            judged.status = Status::Within;
+        }
+        judged.finding = figure.needed.map(|needed| unrated(subject, needed));
+        return judged;
+    }
     let limit = match asked.map(resolve) {
         Some(Ok((limit, rank))) => {
             judged.data = judged.data.max(rank);
@@ -135,6 +152,12 @@ pub fn judge(rules: &[Rule], subject: &Subject, figure: &Figure) -> Judged {
         Severity::Note if figure.bound => Status::Unknown,
         Severity::Note => Status::Within,
     };
+    let zero = figure.zero && figure.kind == Kind::OutputHeadroom;
+    if zero && !judged.stated && by != By::Guard && lost_little(subject, worst) {
+        judged.status = if subject.zero_unused { Status::Within } else { Status::Marginal };
+        judged.finding = (!subject.zero_unused).then(|| lost_zero(subject, figure, worst));
+        return judged;
+    }
     let bar = if by == By::Guard { guard.unwrap_or(limit) } else { limit };
     judged.finding = Some(finding(subject, figure, (worst, bar, by), severity, judged.data));
     judged
@@ -178,6 +201,15 @@ fn verdict(figure: &Figure, worst: f64, limit: f64, guard: Option<f64>) -> Broke
 
 /// The worst rank of what has an effect above a tenth of the limit; where the limit is nought, of the guard.
 fn data_rank(figure: &Figure, limit: Option<f64>, guard: Option<f64>) -> Rank {
+    if figure.kind == Kind::Rejection {
+        // The ledger of the rejection is that of the ratio behind its decibels.
+        let ratio = limit.map_or(0.0, |limit| 10f64.powf(-limit / 20.0));
+        let lines = figure
+            .ledger
+            .iter()
+            .filter(|line| line.item != Item::Nominal && ratio / 10.0 < line.effect.abs());
+        return lines.map(|line| line.rank).max().unwrap_or(Rank::Guaranteed);
+    }
     let scale = limit.filter(|limit| *limit != 0.0).or(guard).map_or(0.0, f64::abs);
     let counts = |effect: f64| scale / 10.0 < effect.abs();
     let lines = figure.ledger.iter().filter(|line| line.item != Item::Nominal && counts(line.effect));
@@ -186,10 +218,65 @@ fn data_rank(figure: &Figure, limit: Option<f64>, guard: Option<f64>) -> Rank {
 
 /// A value as sentences show it: relative errors in percent, other ratios bare.
 pub fn shown(kind: Kind, value: f64) -> String {
-    let relative = matches!(kind, Kind::GainError | Kind::GainSpread | Kind::FeedbackLoading);
+    let relative = matches!(
+        kind,
+        Kind::GainError
+            | Kind::GainSpread
+            | Kind::FeedbackLoading
+            | Kind::OutputCurrent
+            | Kind::SourceLoading
+            | Kind::ResistorPower
+    );
     match kind.doc().unit {
         Unit::One if relative => percent(value),
         unit => show(value, unit),
+    }
+}
+
+/// Whether only the last of a single supply's zero is lost: less than 2 % of the span.
+fn lost_little(subject: &Subject, worst: f64) -> bool {
+    const LITTLE: f64 = 0.02;
+    subject.span.is_some_and(|(span, _)| -worst < LITTLE * span)
+}
+
+fn lost_zero(subject: &Subject, figure: &Figure, worst: f64) -> Finding {
+    let lost = show(-worst, Unit::Volt);
+    Finding {
+        rule: "lost-zero".to_owned(),
+        severity: Severity::Warning,
+        stage: Some(subject.id.to_owned()),
+        value: Some(worst),
+        limit: Some(0.0),
+        unit: Some(Unit::Volt),
+        message: format!("{} can't reach the last {lost} above the ground of its single supply", subject.id),
+        cure: Some("lift the zero by a small bias, give a negative rail, or say `zero: unused` in the budget if it doesn't matter".to_owned()),
+        waived: None,
+        labels: labels(subject, figure),
+    }
+}
+
+/// A resistor without rating that dissipates enough to need a word.
+fn unrated(subject: &Subject, (element, power): (crate::circuit::ElementId, f64)) -> Finding {
+    let resistor = subject.circuit.element(element);
+    let watts = show(power, Unit::Watt);
+    Finding {
+        rule: "resistor-power".to_owned(),
+        severity: Severity::Note,
+        stage: Some(subject.id.to_owned()),
+        value: None,
+        limit: None,
+        unit: Some(Unit::One),
+        message: format!(
+            "{} dissipates {watts} at the extremes of its signals and no rating is stated",
+            resistor.name
+        ),
+        cure: Some(format!(
+            "budget: parts: [{{ match: {}, power: ... }}]; more than {} is needed at 0.6 of the rating",
+            resistor.name,
+            show(power / 0.6, Unit::Watt)
+        )),
+        waived: None,
+        labels: resistor.span.map(|span| Label { span, text: watts.clone() }).into_iter().collect(),
     }
 }
 

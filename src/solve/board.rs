@@ -2,7 +2,7 @@
 //! transfers from the board's primary quantities for every output.
 
 use crate::block::{AmpId, Layout, Port, Role};
-use crate::circuit::{Circuit, NetId, Tie};
+use crate::circuit::{Circuit, DeclaredPair, NetId, Tie};
 use crate::device::{Catalogue, Rank};
 use crate::solve::device::{Device, Supply};
 use crate::solve::model::Model;
@@ -143,6 +143,11 @@ impl<'a> Board<'a> {
     /// Nets of an op amp's positive and negative supply.
     pub fn supply_nets(&self, op_amp: u32) -> (Option<NetId>, Option<NetId>) {
         self.supply_nets[op_amp as usize]
+    }
+
+    /// The primary that is a declared pair's difference; its mean is the next.
+    pub fn pair_difference(&self, pair: &DeclaredPair) -> Option<u32> {
+        self.fixed.get(&pair.positive)?.first().map(|(primary, _)| *primary)
     }
 
     /// The primary that a held net is alone.
