@@ -126,9 +126,8 @@ impl Stage<'_> {
             Node::Unknown(at) => currents[at as usize],
             Node::Ground | Node::Port(_) => 0.0,
         };
-        let feeds: Vec<f64> =
-            self.board.currents(self.block).map(|(into, from)| weight(into) - weight(from)).collect();
-        Some(self.board.compose(self.block, &ports, &feeds, constant))
+        let own = self.board.own(self.block, weight, constant);
+        Some(self.board.compose(self.block, &ports, &own))
     }
 
     /// The block's excitation with the primaries at one end of a quantity.
@@ -144,6 +143,10 @@ impl Stage<'_> {
             let amps = value(board.first_current as u32 + at);
             injections.push((into, amps));
             injections.push((from, -amps));
+        }
+        for drain in &self.model().drains {
+            let amps = drain.amps * value(board.primary_of_feed(drain.feed));
+            injections.push((Node::Unknown(drain.output), -amps));
         }
         Excitation {
             ports: self.model().ports.iter().map(port).collect(),
