@@ -45,7 +45,9 @@ pub fn outside_loop(circuit: &Circuit, layout: &Layout, block: &Block) -> Option
                 continue;
             }
             for (other_pin, other) in element.nets.iter().enumerate() {
-                if other_pin != pin && (layout.role(*other) == Role::Free || open_end(circuit, layout, *other)) {
+                if other_pin != pin
+                    && (layout.role(*other) == Role::Free || open_end(circuit, layout, *other))
+                {
                     stack.push((*other, if unmodelled { Some(id) } else { through }));
                 }
             }

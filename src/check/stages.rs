@@ -4,11 +4,11 @@ use crate::block::{AmpId, Topology};
 use crate::budget::{Budget, Gain, StageBudget};
 use crate::device::Rank;
 use crate::diagnostic::{Diagnostic, Label, Severity};
-use crate::figure::{Figure, Main, PinVoltages, Requirement, Stage, Transfer, explain};
+use crate::figure::{Figure, Main, PinVoltages, Requirement, Stage, Transfer};
 use crate::quantity::percent;
 use crate::report::{FigureReport, LedgerLine, PinReport, StageReport, TransferReport};
 use crate::rule::{Finding, Judged, Rule, Status, Subject, judge};
-use crate::solve::{Board, Fault, PrimaryKind};
+use crate::solve::{Board, PrimaryKind};
 use crate::source::matches;
 use rayon::prelude::*;
 
@@ -17,11 +17,6 @@ pub(super) struct Judgement {
     pub(super) report: StageReport,
     pub(super) findings: Vec<Finding>,
     op_amp: u32,
-}
-
-/// Why a block has no figures.
-pub(super) fn reason(board: &Board, _block: usize, fault: &Fault) -> String {
-    explain(board.circuit, board.layout, fault)
 }
 
 /// Reviews and judges every stage, blocks in parallel, in netlist order.

@@ -44,8 +44,10 @@ pub(super) fn calls(
     let inner = |level: usize, statement: &Statement| {
         let Kind::Call { model, .. } = &statement.kind else { return None };
         let (name, model) = (sources.text(statement.name), sources.text(*model));
-        let declared =
-            budget.devices.iter().any(|choice| [name, model].iter().any(|own| matches(&choice.name.text, own)));
+        let declared = budget
+            .devices
+            .iter()
+            .any(|choice| [name, model].iter().any(|own| matches(&choice.name.text, own)));
         let op_amp = declared || catalogue.find(model).is_some();
         let index = definitions.find(netlist, Some(level), model);
         Some(Inner { index, span: statement.span, op_amp })

@@ -126,8 +126,11 @@ impl<'e, 'a> Declarer<'e, 'a> {
         let elements = || circuit.elements.iter().map(|element| element.name.as_str());
         let devices = || {
             let op_amps = circuit.op_amps.iter().map(|op_amp| (op_amp.element, op_amp.model.as_str()));
-            let unplaced = circuit.unplaced.iter().map(|unplaced| (unplaced.element, unplaced.model.as_str()));
-            op_amps.chain(unplaced).flat_map(|(element, model)| [model, circuit.element(element).name.as_str()])
+            let unplaced =
+                circuit.unplaced.iter().map(|unplaced| (unplaced.element, unplaced.model.as_str()));
+            op_amps
+                .chain(unplaced)
+                .flat_map(|(element, model)| [model, circuit.element(element).name.as_str()])
         };
         let mut faults = Vec::new();
         for name in budget.parts.iter().flat_map(|part| &part.matches) {
@@ -148,12 +151,22 @@ impl<'e, 'a> Declarer<'e, 'a> {
         }
         for choice in &budget.devices {
             if !devices().any(|device| matches(&choice.name.text, device)) {
-                faults.push(unknown(&choice.name, "device or element", nearest(&choice.name.text, devices())));
+                faults.push(unknown(
+                    &choice.name,
+                    "device or element",
+                    nearest(&choice.name.text, devices()),
+                ));
             }
-            if let Some(profile) = choice.profile.as_ref().filter(|name| expander.catalogue.named(&name.text).is_none()) {
+            if let Some(profile) =
+                choice.profile.as_ref().filter(|name| expander.catalogue.named(&name.text).is_none())
+            {
                 let message = format!("no profile is named {}", quote(&profile.text));
                 let fault = Diagnostic::at("unknown-device", Severity::Error, profile.span, message);
-                faults.push(fault.help("name a profile that is embedded or given with --devices, or state `technology:`"));
+                faults.push(
+                    fault.help(
+                        "name a profile that is embedded or given with --devices, or state `technology:`",
+                    ),
+                );
             }
         }
         self.expander.faults.extend(faults);
@@ -163,7 +176,9 @@ impl<'e, 'a> Declarer<'e, 'a> {
     fn driven(&mut self, name: &Name) -> Option<NetId> {
         let net = self.net(name)?;
         let circuit = &self.expander.circuit;
-        let Some(op_amp) = circuit.op_amps.iter().find(|op_amp| op_amp.output == net) else { return Some(net) };
+        let Some(op_amp) = circuit.op_amps.iter().find(|op_amp| op_amp.output == net) else {
+            return Some(net);
+        };
         let message = format!(
             "expected a net that something outside drives, found {}, the output of {}",
             quote(&name.text),

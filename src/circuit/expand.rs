@@ -171,7 +171,8 @@ impl<'a> Expander<'a> {
             && (level.path.is_empty() || net.0 == 0 || self.is_global(text))
         {
             if net.0 == 0 {
-                let used = self.budget.grounds.iter().position(|ground| ground.text.eq_ignore_ascii_case(text));
+                let used =
+                    self.budget.grounds.iter().position(|ground| ground.text.eq_ignore_ascii_case(text));
                 used.into_iter().for_each(|at| self.grounds_used[at] = true);
             }
             return *net;
@@ -275,8 +276,12 @@ impl<'a> Expander<'a> {
 
     /// A passive's value, tolerance and rating; the reader has put in what a model of it says.
     fn part(&mut self, name: &str, passive: Passive, stated: &Stated, level: &Level) -> crate::circuit::Part {
-        let value = stated.value.and_then(|value| self.value(value, level)).filter(|value| value.is_finite());
-        let sound = value.filter(|value| passive == Passive::Resistor || 0.0 < *value);
+        let value = stated.value.and_then(|value| {
+            let read = level.parameters.value(self.sources, value);
+            let fault = |(span, reason)| Diagnostic::at("unreadable-value", Severity::Error, span, reason);
+            read.map_err(|reason| self.faults.push(fault(reason))).ok()
+        });
+        let sound = value.filter(|value| value.is_finite() && (passive == Passive::Resistor || 0.0 < *value));
         let limits = (stated.tolerance, stated.rating);
         values::part(self.budget, &self.catalogue.assumed, name, passive, sound, limits)
     }
@@ -297,7 +302,8 @@ impl<'a> Expander<'a> {
                 Some(index) if self.calls[index].opens => {
                     self.open(statement, name, nets, parameters, index, level)
                 }
-                Some(index) => match pins_by_name(&self.ports(index)).filter(|pins| pins.len() == nets.len()) {
+                Some(index) => match pins_by_name(&self.ports(index)).filter(|pins| pins.len() == nets.len())
+                {
                     Some(pins) => {
                         let identity = Identity { profile: None, technology: None, pins };
                         self.op_amp(statement, name, text, &nets, identity);
@@ -313,7 +319,8 @@ impl<'a> Expander<'a> {
             },
             Err(Misfit(expected)) => {
                 let found = nets.len();
-                let reason = format!("it is called with {found} nodes, the pin order of {text} has {expected}");
+                let reason =
+                    format!("it is called with {found} nodes, the pin order of {text} has {expected}");
                 self.unplaced(statement, name, &nets, text, reason);
             }
         }
@@ -321,7 +328,10 @@ impl<'a> Expander<'a> {
 
     /// An op amp that can't be placed: kept as an unmodelled part, and counted.
     fn unplaced(&mut self, statement: &Statement, name: String, nets: &[NetId], model: &str, reason: String) {
-        let cure = format!("budget: devices: {{ {model}: {{ pins: [...] }} }} gives the order of its {} nodes", nets.len());
+        let cure = format!(
+            "budget: devices: {{ {model}: {{ pins: [...] }} }} gives the order of its {} nodes",
+            nets.len()
+        );
         let element = self.unmodelled(statement, name, nets.into());
         self.circuit.unplaced.push(Unplaced { element, model: model.to_owned(), reason, cure });
     }
@@ -410,14 +420,21 @@ impl<'a> Expander<'a> {
         let path = format!("{name}.");
         let larger = self.opened.saturating_add(call.weight);
         let fault = if OPENED < larger {
-            Some(format!("expected at most {OPENED} elements in all subcircuits together once they are expanded, found more"))
+            Some(format!(
+                "expected at most {OPENED} elements in all subcircuits together once they are expanded, found more"
+            ))
         } else if DEPTH <= level.depth || LONGEST_PATH < path.len() {
-            Some(format!("calls nest more than {DEPTH} deep, or their names grow longer than {LONGEST_PATH} bytes"))
+            Some(format!(
+                "calls nest more than {DEPTH} deep, or their names grow longer than {LONGEST_PATH} bytes"
+            ))
         } else {
             None
         };
         if let Some(reason) = &fault {
-            let message = format!("{reason}; {} is kept as an unmodelled part", quote(self.sources.text(statement.name)));
+            let message = format!(
+                "{reason}; {} is kept as an unmodelled part",
+                quote(self.sources.text(statement.name))
+            );
             self.faults.push(Diagnostic::at("too-large", Severity::Error, statement.span, message));
         }
         // A circle of calls and a count of pins that differs are faults of their own already.

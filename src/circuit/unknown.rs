@@ -106,16 +106,18 @@ fn unmodelled(circuit: &Circuit, supply: &[bool], name: &str, calls: &[Undefined
         "neither the netlist nor a profile defines {}; {count} of it kept as parts that are not modelled",
         quote(name)
     );
-    let labels =
-        calls.iter().take(SHOWN).filter_map(|(element, _)| circuit.element(*element).span).map(|span| Label {
-            span,
-            text: String::new(),
-        });
+    let labels = calls
+        .iter()
+        .take(SHOWN)
+        .filter_map(|(element, _)| circuit.element(*element).span)
+        .map(|span| Label { span, text: String::new() });
     Diagnostic {
         kind: "unknown-subcircuit",
         severity,
         message,
         labels: labels.collect(),
-        help: Some("where it is an op amp, budget: devices: { NAME: { profile: ..., pins: [...] } }".to_owned()),
+        help: Some(
+            "where it is an op amp, budget: devices: { NAME: { profile: ..., pins: [...] } }".to_owned(),
+        ),
     }
 }

@@ -53,7 +53,9 @@ pub(super) fn part(
 pub(super) fn resistor(part: Part) -> ElementKind {
     match part.value {
         Some(0.0) => ElementKind::Link,
-        Some(ohms) if 0.0 < ohms && ohms.is_finite() && (1.0 / ohms).is_finite() => ElementKind::Resistor(part),
+        Some(ohms) if 0.0 < ohms && ohms.is_finite() && (1.0 / ohms).is_finite() => {
+            ElementKind::Resistor(part)
+        }
         _ => ElementKind::Resistor(Part { value: None, ..part }),
     }
 }

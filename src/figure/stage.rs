@@ -300,7 +300,9 @@ pub fn explain(circuit: &Circuit, layout: &Layout, fault: &Fault) -> String {
         ),
         Fault::UnknownDevice(at) => format!("unknown device {} ({})", op_amp(at).model, op_amp(at).name),
         Fault::NoGain(at) => format!("the profile of {} gives no open-loop gain", op_amp(at).name),
-        Fault::TooLarge(size) => format!("its block has {size} unknowns or resistors, too many to solve together"),
+        Fault::TooLarge(size) => {
+            format!("its block has {size} unknowns or resistors, too many to solve together")
+        }
         Fault::Singular(Some(at)) => format!("its equations have no single solution at net {}", net(at)),
         Fault::Singular(None) => "its equations have no single solution".to_owned(),
         Fault::NoTwin(Some(at)) if matches!(layout.role(*at), Role::Output(_)) => {

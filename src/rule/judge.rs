@@ -220,10 +220,7 @@ fn finding(
         value: Some(value),
         limit: Some(limit),
         unit: Some(doc.unit),
-        message: format!(
-            "{} {} is {number} {case}, {verdict}{assumed}",
-            subject.id, doc.title
-        ),
+        message: format!("{} {} is {number} {case}, {verdict}{assumed}", subject.id, doc.title),
         cure: Some(cure(subject, figure, worst, limit, data)),
         waived: None,
         labels: labels(subject, figure),
@@ -250,8 +247,13 @@ fn cure(subject: &Subject, figure: &Figure, worst: f64, limit: f64, data: Rank) 
             let names: Vec<String> = resistors.map(|(line, _)| name(line.item)).collect();
             format!("tighten the tolerance of {}, or take a matched network", names.join(" and "))
         }
-        Some(Item::Values) => "change the ratio of the gain resistors: their nominal values miss the intended gain".to_owned(),
-        Some(Item::Upstream(_)) => format!("{} comes first: look at the stage that drives it", name(leading.map_or(Item::Nominal, |(line, _)| line.item))),
+        Some(Item::Values) => {
+            "change the ratio of the gain resistors: their nominal values miss the intended gain".to_owned()
+        }
+        Some(Item::Upstream(_)) => format!(
+            "{} comes first: look at the stage that drives it",
+            name(leading.map_or(Item::Nominal, |(line, _)| line.item))
+        ),
         _ => doc.cure.to_owned(),
     };
     if doc.bad == Bad::Low && doc.unit == Unit::Volt && 0.0 < short {
