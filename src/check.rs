@@ -5,6 +5,7 @@ mod board;
 mod cover;
 mod embedded;
 mod files;
+mod names;
 mod stages;
 
 use crate::diagnostic::Severity;

@@ -287,8 +287,12 @@ impl<'a> Expander<'a> {
 
     /// A passive's value, tolerance and rating; the reader has put in what a model of it says.
     fn part(&mut self, name: &str, passive: Passive, stated: &Stated, level: &Level) -> crate::circuit::Part {
-        let value = stated.value.and_then(|value| self.value(value, level)).filter(|value| value.is_finite());
-        let sound = value.filter(|value| passive == Passive::Resistor || 0.0 < *value);
+        let value = stated.value.and_then(|value| {
+            let read = level.parameters.value(self.sources, value);
+            let fault = |(span, reason)| Diagnostic::at("unreadable-value", Severity::Error, span, reason);
+            read.map_err(|reason| self.faults.push(fault(reason))).ok()
+        });
+        let sound = value.filter(|value| value.is_finite() && (passive == Passive::Resistor || 0.0 < *value));
         let limits = (stated.tolerance, stated.rating);
         values::part(self.budget, &self.catalogue.assumed, name, passive, sound, limits)
     }

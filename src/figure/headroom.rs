@@ -5,7 +5,7 @@ use crate::device::{Key, Rank};
 use crate::figure::disturbance::Extra;
 use crate::figure::linear::{Linear, Reading, axes};
 use crate::figure::stage::Stage;
-use crate::figure::study::{Axis, Quantity, study};
+use crate::figure::study::{Axis, Quantity, Study, study};
 use crate::figure::{Bad, Figure, Item, Kind, Quality};
 use crate::solve::{Excitation, Node};
 use smallvec::smallvec;
