@@ -11,6 +11,7 @@ use crate::solve::{Board, Fault};
 /// An op amp without figures: what to say of it.
 struct Case {
     element: ElementId,
+    name: String,
     rule: &'static str,
     severity: Severity,
     reason: String,
@@ -27,6 +28,7 @@ pub(super) fn count(board: &Board, report: &mut BoardReport) {
     let mut cases: Vec<Case> = Vec::new();
     let unplaced = circuit.unplaced.iter().map(|unplaced| Case {
         element: unplaced.element,
+        name: circuit.element(unplaced.element).name.clone(),
         rule: "pin-map",
         severity: Severity::Error,
         reason: unplaced.reason.clone(),
@@ -35,7 +37,7 @@ pub(super) fn count(board: &Board, report: &mut BoardReport) {
     });
     cases.extend(unplaced);
     let blocked = board.layout.skipped.iter();
-    cases.extend(blocked.map(|(at, why)| misplaced(board, circuit.op_amps[*at as usize].element, *why)));
+    cases.extend(blocked.map(|(at, why)| misplaced(board, *at, *why)));
     for (at, amp) in board.layout.amps.iter().enumerate() {
         let Some(op_amp) = amp.op_amp else { continue };
         match &board.models[board.place[at].0].fault {
@@ -45,21 +47,21 @@ pub(super) fn count(board: &Board, report: &mut BoardReport) {
     }
     cases.sort_by_key(|case| case.element);
     for case in cases {
-        let element = circuit.element(case.element);
+        let span = circuit.element(case.element).span;
         let message = match case.skipped {
-            true => format!("{} is not analysed: {}", element.name, case.reason),
-            false => format!("{} has no linear figures: {}", element.name, case.reason),
+            true => format!("{} is not analysed: {}", case.name, case.reason),
+            false => format!("{} has no linear figures: {}", case.name, case.reason),
         };
         let fault = Diagnostic {
             kind: case.rule,
             severity: case.severity,
             message,
-            labels: element.span.map(|span| Label { span, text: String::new() }).into_iter().collect(),
+            labels: span.map(|span| Label { span, text: String::new() }).into_iter().collect(),
             help: case.cure,
         };
-        report.findings.push(Finding { stage: Some(element.name.clone()), ..Finding::from(fault) });
+        report.findings.push(Finding { stage: Some(case.name.clone()), ..Finding::from(fault) });
         match case.skipped {
-            true => coverage.skipped.push((element.name.clone(), case.reason)),
+            true => coverage.skipped.push((case.name, case.reason)),
             false => coverage.non_linear += 1,
         }
     }
@@ -67,18 +69,20 @@ pub(super) fn count(board: &Board, report: &mut BoardReport) {
 }
 
 /// An op amp whose output is no place for one.
-fn misplaced(board: &Board, element: ElementId, why: Unplaceable) -> Case {
-    let name = |net: NetId| &board.circuit.net(net).name;
+fn misplaced(board: &Board, op_amp: u32, why: Unplaceable) -> Case {
+    let part = &board.circuit.op_amps[op_amp as usize];
+    let net = |net: NetId| &board.circuit.net(net).name;
     let (rule, reason) = match why {
         Unplaceable::Grounded => ("shorted-output", "its output is tied to ground".to_owned()),
-        Unplaceable::Tied(net) => {
-            ("shorted-output", format!("its output is tied to the source or rail on {}", name(net)))
+        Unplaceable::Tied(at) => {
+            ("shorted-output", format!("its output is tied to the source or rail on {}", net(at)))
         }
-        Unplaceable::Joined(net, outputs) => {
-            ("joined-outputs", format!("{outputs} outputs are joined on {}", name(net)))
+        Unplaceable::Joined(at, outputs) => {
+            ("joined-outputs", format!("{outputs} outputs are joined on {}", net(at)))
         }
     };
-    Case { element, rule, severity: Severity::Error, reason, cure: None, skipped: true }
+    let (element, name) = (part.element, part.name.clone());
+    Case { element, name, rule, severity: Severity::Error, reason, cure: None, skipped: true }
 }
 
 /// An op amp whose block has no figures.
@@ -106,7 +110,7 @@ fn unsolved(board: &Board, amp: AmpId, op_amp: u32, fault: &Fault) -> Case {
         _ => None,
     };
     let reason = explain(board.circuit, board.layout, fault);
-    Case { element: part.element, rule, severity, reason, cure, skipped }
+    Case { element: part.element, name: part.name.clone(), rule, severity, reason, cure, skipped }
 }
 
 /// Whether an output reaches the inputs of other amplifiers.

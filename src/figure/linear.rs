@@ -54,6 +54,7 @@ pub(super) fn axes(model: &Model, ideal_base: bool) -> Vec<Axis> {
         .map(|parameter| Axis {
             base: if ideal_base { parameter.ideal } else { parameter.nominal },
             nominal: parameter.nominal,
+            typical: parameter.nominal,
             low: parameter.low,
             high: parameter.high,
             rank: parameter.rank,

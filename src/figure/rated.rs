@@ -5,7 +5,7 @@ use crate::figure::linear::{Linear, Reading, axes};
 use crate::figure::range::{Extreme, extremes};
 use crate::figure::stage::{Main, Stage};
 use crate::figure::study::{Axis, Quantity, study};
-use crate::figure::{Bad, Figure, Item, Kind};
+use crate::figure::{Bad, Figure, Item, Kind, Quality};
 use crate::solve::{Excitation, Solved};
 
 /// The rated output current, ampere.
@@ -87,6 +87,7 @@ fn share(kind: Kind, stage: &Stage, from: Option<Main>) -> Result<Figure, String
     axes.push(Axis {
         base: rated.nominal,
         nominal: rated.nominal,
+        typical: rated.nominal,
         low: rated.low,
         high: rated.nominal,
         rank: rated.rank,
@@ -94,8 +95,8 @@ fn share(kind: Kind, stage: &Stage, from: Option<Main>) -> Result<Figure, String
     let quantity = Share { current: Linear { constant: sign * beside, ..current(sign, excitation) } };
     let found = study(&quantity, &axes, Bad::High)
         .ok_or_else(|| "its equations have no solution at the worst corner".to_owned())?;
-    let items = [Item::OpAmp(stage.op_amp, "rated output current")];
-    let figure = stage.figure_of(kind, &axes, &found, &items, false);
+    let items = [Item::OpAmp(stage.op_amp, Quality::RatedCurrent)];
+    let figure = stage.figure_of(kind, &quantity, &axes, &found, &items, false);
     let rests_on = if bound { Rank::Assumed } else { Rank::Guaranteed };
     Ok(Figure { bound, rests_on, ..figure })
 }
@@ -115,6 +116,13 @@ fn full_swing(stage: &Stage, from: Option<Main>, current: &Linear) -> Option<(Ex
     let point: Vec<f64> = model.parameters.iter().map(|parameter| parameter.nominal).collect();
     let reached = Linear { excitation: excitation.clone(), ..current.clone() }.at(&point, &mut gradient)?;
     Some((excitation, if reached < 0.0 { -1.0 } else { 1.0 }))
+}
+
+impl Stage<'_> {
+    /// The rated output current, ampere.
+    pub(super) fn rated_current(&self) -> Option<f64> {
+        rated(self).map(|rated| rated.nominal)
+    }
 }
 
 fn rated(stage: &Stage) -> Option<Rated> {
