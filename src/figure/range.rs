@@ -136,13 +136,24 @@ impl Stage<'_> {
         Some(self.board.compose(self.block, &ports, &own))
     }
 
+    /// The value of a primary at one end of a quantity.
+    pub(super) fn value_at(&self, end: &Extreme, primary: u32) -> f64 {
+        match end.values.binary_search_by_key(&primary, |(at, _)| *at) {
+            Ok(found) => end.values[found].1,
+            Err(_) => self.board.primaries[primary as usize].rest,
+        }
+    }
+
+    /// What draws from the stage's output by itself: primary and the current that leaves for one unit of it.
+    pub(super) fn drained(&self) -> Vec<(u32, f64)> {
+        let drains = self.model().drains.iter().filter(|drain| Node::Unknown(drain.output) == self.output());
+        drains.map(|drain| (self.board.primary_of_feed(drain.feed), drain.amps)).collect()
+    }
+
     /// The block's excitation with the primaries at one end of a quantity.
     pub(super) fn excited(&self, end: &Extreme) -> Excitation<f64> {
         let board = self.board;
-        let value = |primary: u32| match end.values.binary_search_by_key(&primary, |(at, _)| *at) {
-            Ok(found) => end.values[found].1,
-            Err(_) => board.primaries[primary as usize].rest,
-        };
+        let value = |primary: u32| self.value_at(end, primary);
         let port = |port| board.row(port).iter().map(|(at, entry)| entry * value(*at)).sum();
         let mut injections = smallvec::SmallVec::new();
         for ((into, from), at) in board.currents(self.block).zip(&self.cut().currents) {
