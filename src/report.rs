@@ -4,6 +4,7 @@ mod harmless;
 mod json;
 mod text;
 
+pub(crate) use harmless::harmless;
 pub use json::json;
 pub use text::{Style, ledger_text, text};
 
