@@ -26,6 +26,12 @@ pub struct Options {
     pub rules: Vec<PathBuf>,
     /// Unwaived findings of this severity or above fail; an error where left out.
     pub fail_on: Option<Severity>,
+    /// Whether every value's origin and formula is told.
+    pub detail: bool,
+    /// Random trials of each figure.
+    pub trials: u32,
+    /// Values that stand for the netlist's own: element and value as written.
+    pub with: Vec<(String, f64)>,
     /// Whether an incomplete run fails.
     pub complete: bool,
 }

@@ -7,21 +7,29 @@
 //! series with the input. With a = 0 and no input conductance the same rows describe the twin: a nullor.
 
 mod board;
+mod dense;
 mod device;
 mod gradient;
+mod load;
 mod model;
 mod network;
 mod parameter;
 mod shorted;
+mod sweep;
 mod system;
 
 pub use board::{Board, Primary, PrimaryKind, Row};
 pub use device::{Device, Range, Supply};
 pub use gradient::Sensitivity;
 pub use model::{Fault, Model};
-pub use network::{AmpStamp, AmpValues, Branch, Excitation, LoadStamp, Network, Node, Short, Values};
+pub use network::{
+    AmpStamp, AmpValues, Branch, Drain, Excitation, Feed, LoadStamp, Network, Node, Short, Values,
+};
 pub use parameter::{Parameter, What, along, point, regenerates, values_at};
 pub use system::{Singular, Solved, State, Weights};
+
+/// A short list: most blocks have few unknowns, ports and branches, and are solved without the heap.
+pub type List<T> = smallvec::SmallVec<[T; 8]>;
 
 /// A number that systems are solved in: real at DC, complex above.
 pub trait Scalar: nalgebra::ComplexField<RealField = f64> + Copy {}

@@ -148,7 +148,14 @@ fn opens(circuit: &Circuit, roles: &[Role], net: NetId, touches_output: bool) ->
 fn feed(circuit: &mut Circuit, net: NetId) {
     let name = circuit.net(net).name.clone();
     let span = circuit.net(net).span;
-    circuit.currents.push(CurrentInput { name, into: net, from: Circuit::GROUND, range: None, span });
+    circuit.currents.push(CurrentInput {
+        name,
+        into: net,
+        from: Circuit::GROUND,
+        range: None,
+        source: None,
+        span,
+    });
 }
 
 /// Where nothing could drive a piece, its one labelled net is taken for the signal.

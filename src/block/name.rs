@@ -53,9 +53,8 @@ struct Side {
 fn side(circuit: &Circuit, layout: &Layout, input: NetId) -> Side {
     let conducts = |kind: &ElementKind| !matches!(kind, ElementKind::Capacitor(_));
     let reached = walk(circuit, layout, input, conducts);
-    let fed = circuit.currents.iter().any(|current| {
-        reached.contains(&current.into) || reached.contains(&current.from) && current.from != Circuit::GROUND
-    });
+    let feeds = |net: &NetId| layout.role(*net) == Role::Free && reached.contains(net);
+    let fed = circuit.currents.iter().any(|current| feeds(&current.into) || feeds(&current.from));
     Side { held: reached.into_iter().filter(|net| layout.role(*net) != Role::Free).collect(), fed }
 }
 

@@ -13,7 +13,7 @@ use crate::netlist;
 use crate::report::{BoardReport, Coverage, Verdict};
 use crate::rule::{Finding, Waived};
 use crate::solve::Board;
-use crate::source::{FileId, Sources, matches};
+use crate::source::{FileId, Sources, matches, quote};
 use std::path::{Path, PathBuf};
 
 /// A board's report, and the files that belong to it and can't be used.
@@ -48,6 +48,7 @@ pub(super) fn check(sources: &mut Sources, packs: &Packs, options: &Options, pat
         report.budget = Some(name);
     }
     report.name = budget.board.clone();
+    let mut unknown_trials = Vec::new();
     if let Some(file) = files::open(sources, path, &shown, &mut report.findings) {
         let mut includer = Includer::new(path, &shown, file);
         let (netlist, faults) =
@@ -55,10 +56,16 @@ pub(super) fn check(sources: &mut Sources, packs: &Packs, options: &Options, pat
         report.findings.extend(faults.into_iter().map(Finding::from));
         let (mut circuit, faults) = circuit::build(sources, &netlist, &budget, &packs.catalogue);
         report.findings.extend(faults.into_iter().map(Finding::from));
+        let untouched = options.with.iter().filter(|(name, value)| !circuit.set_value(name, *value));
+        unknown_trials.extend(untouched.map(|(name, _)| {
+            format!("{shown}: no resistor, capacitor or inductor is named {}", quote(name))
+        }));
         let layout = lay_out(&mut circuit);
-        analyse(packs, &budget, &circuit, &layout, &mut report);
+        let detail = stages::Detail { sources: options.detail.then_some(&*sources), trials: options.trials };
+        analyse(packs, &budget, (&circuit, &layout), detail, &mut report);
     }
-    let unusable = unusable(sources, &report, budget_file);
+    let mut unusable = unusable(sources, &report, budget_file);
+    unusable.extend(unknown_trials);
     waive(&budget, &mut report.findings);
     report.findings.sort_by_key(|finding| std::cmp::Reverse(finding.severity));
     report.verdict = verdict(&report, options.fail_on.unwrap_or(Severity::Error));
@@ -90,12 +97,18 @@ fn budget_path(options: &Options, path: &Path) -> Option<PathBuf> {
     options.budget.clone().or_else(|| Some(path.with_extension("budget.yaml")).filter(|path| path.is_file()))
 }
 
-fn analyse(packs: &Packs, budget: &Budget, circuit: &Circuit, layout: &Layout, report: &mut BoardReport) {
+fn analyse(
+    packs: &Packs,
+    budget: &Budget,
+    (circuit, layout): (&Circuit, &Layout),
+    detail: stages::Detail,
+    report: &mut BoardReport,
+) {
     let supplies = supplies(budget, circuit);
     let board = Board::new(circuit, layout, &packs.catalogue, supplies);
     let named = name(circuit, layout, &|net| board.level(net));
     let moved = deviations(&board);
-    let judged = stages::judge_all(&board, budget, &packs.rules, &named, &moved);
+    let judged = stages::judge_all(&board, budget, &packs.rules, &named, &moved, detail);
     report.findings.extend(names::misnamed(budget, circuit, &judged));
     cover::count(&board, report);
     report.assumed = stages::assumed(&board, budget);

@@ -228,8 +228,11 @@ impl Packs {
     }
 
     fn pack(&mut self, sources: &Sources, file: FileId) {
-        let known: Vec<(&str, Option<Unit>)> =
-            Kind::ALL.iter().map(|kind| (kind.doc().slug, Some(kind.doc().unit))).collect();
+        let known: Vec<(&str, Option<Unit>)> = Kind::ALL
+            .iter()
+            .map(|kind| (kind.doc().slug, Some(kind.doc().unit)))
+            .chain([("lost-zero", None)])
+            .collect();
         let (rules, faults) = read_pack(sources, file, &known);
         self.rules.extend(rules);
         self.take(sources, file, faults);

@@ -4,12 +4,12 @@ use crate::block::{AmpId, Topology};
 use crate::budget::{Budget, Gain, StageBudget};
 use crate::device::Rank;
 use crate::diagnostic::{Diagnostic, Label, Severity};
-use crate::figure::{Figure, Main, PinVoltages, Requirement, Stage, Transfer};
-use crate::quantity::percent;
+use crate::figure::{Figure, Kind, LegsFrom, Main, PinVoltages, Requirement, Review, Stage, Transfer};
+use crate::quantity::{Unit, percent};
 use crate::report::{FigureReport, LedgerLine, PinReport, StageReport, TransferReport};
 use crate::rule::{Finding, Judged, Rule, Status, Subject, judge};
 use crate::solve::{Board, PrimaryKind};
-use crate::source::matches;
+use crate::source::{Sources, matches};
 use rayon::prelude::*;
 
 /// A stage judged.
@@ -19,6 +19,15 @@ pub(super) struct Judgement {
     op_amp: u32,
 }
 
+/// How much is told of each stage.
+#[derive(Debug, Clone, Copy, Default)]
+pub(super) struct Detail<'s> {
+    /// Texts to name origins by, where every value's origin and formula is asked for.
+    pub(super) sources: Option<&'s Sources>,
+    /// Random trials of each figure.
+    pub(super) trials: u32,
+}
+
 /// Reviews and judges every stage, blocks in parallel, in netlist order.
 pub(super) fn judge_all(
     board: &Board,
@@ -26,14 +35,16 @@ pub(super) fn judge_all(
     rules: &[Rule],
     names: &[(Topology, Option<u32>)],
     deviations: &[(f64, Rank)],
+    detail: Detail,
 ) -> Vec<Judgement> {
     let groups = groups(board, names);
     (0..board.layout.amps.len())
         .into_par_iter()
         .filter_map(|at| {
-            let stage = Stage::of(board, deviations, AmpId(at as u32))?;
+            let mut stage = Stage::of(board, deviations, AmpId(at as u32))?;
+            stage.trials = detail.trials;
             let group = names[at].1.map(|group| groups[group as usize].clone());
-            Some(one(&stage, budget, rules, names[at].0, group))
+            Some(one(&stage, budget, rules, (names[at].0, group), detail))
         })
         .collect()
 }
@@ -54,8 +65,8 @@ fn one(
     stage: &Stage,
     budget: &Budget,
     rules: &[Rule],
-    topology: Topology,
-    group: Option<String>,
+    (topology, group): (Topology, Option<String>),
+    detail: Detail,
 ) -> Judgement {
     let part = stage.part();
     let asked: Vec<&StageBudget> = budget
@@ -63,7 +74,13 @@ fn one(
         .iter()
         .filter(|asked| asked.matches.iter().any(|pattern| matches(&pattern.text, &part.name)))
         .collect();
-    let review = stage.review(&requirement(&asked));
+    let mut requirement = requirement(&asked);
+    requirement.legs = match topology {
+        Topology::Difference => LegsFrom::Signals,
+        Topology::Instrumentation => LegsFrom::Nowhere,
+        _ => LegsFrom::Pair,
+    };
+    let review = stage.review(&requirement);
     let device = stage.profile().map_or(part.model.as_str(), |profile| profile.name.as_str());
     let stated: Vec<(String, f64, bool)> = asked
         .iter()
@@ -77,7 +94,10 @@ fn one(
         topology: topology.word(),
         device,
         technology: part.technology,
+        grouped: group.is_some(),
         span: review.span,
+        rated_load: stage.rated_load(),
+        zero_unused: asked.iter().any(|asked| asked.zero_unused),
         stated: &stated,
     };
     let mut findings = Vec::new();
@@ -89,7 +109,7 @@ fn one(
         if figure.kind.doc().slug != "loop-gain" || !speaks("gain-error") {
             findings.extend(judged.finding.take());
         }
-        figures.push(figure_report(stage, figure, judged));
+        figures.push(figure_report(stage, &review, figure, judged, detail.sources));
     }
     let report = StageReport {
         id: part.name.clone(),
@@ -98,6 +118,7 @@ fn one(
         group,
         output: stage.board.circuit.net(part.output).name.clone(),
         transfers: transfers(&review.transfers, review.main),
+        worked: detail.sources.and_then(|_| stage.worked_transfer(&review, topology)),
         local: stage.local().map(|local| transfers(&local, None)),
         pins: review.pins.iter().map(pin).collect(),
         figures,
@@ -125,6 +146,7 @@ fn transfers(found: &[Transfer], main: Option<usize>) -> Vec<TransferReport> {
         input: transfer.input.name.clone(),
         unit: if matches!(transfer.input.from, Main::Current(_)) { "ohm" } else { "V/V" },
         frequency: 0.0,
+        adjusts: transfer.adjusts,
         ideal: transfer.ideal,
         actual: transfer.actual,
         error: transfer.actual.filter(|_| transfer.ideal != 0.0).map(|actual| actual / transfer.ideal - 1.0),
@@ -143,7 +165,13 @@ fn pin(pins: &PinVoltages) -> PinReport {
     }
 }
 
-fn figure_report(stage: &Stage, figure: &Figure, judged: Judged) -> FigureReport {
+fn figure_report(
+    stage: &Stage,
+    review: &Review,
+    figure: &Figure,
+    judged: Judged,
+    sources: Option<&Sources>,
+) -> FigureReport {
     let doc = figure.kind.doc();
     let shares = figure.shares();
     let direction = figure.worst.zip(figure.nominal).map_or(1.0, |(worst, nominal)| {
@@ -153,6 +181,8 @@ fn figure_report(stage: &Stage, figure: &Figure, judged: Judged) -> FigureReport
         item: line.item.label(stage.board.circuit),
         effect: line.effect,
         share,
+        value: line.value,
+        origin: sources.and_then(|sources| stage.origin(line, sources)),
         against: share.is_some() && line.effect * direction < 0.0,
     });
     FigureReport {
@@ -168,6 +198,9 @@ fn figure_report(stage: &Stage, figure: &Figure, judged: Judged) -> FigureReport
         status: judged.status,
         reason: judged.reason,
         data: judged.data,
+        ledger_unit: if figure.kind == Kind::Rejection { Unit::One } else { doc.unit },
+        worked: sources.and_then(|_| stage.worked(review, figure)),
+        trials: figure.trials,
         ledger: lines.collect(),
     }
 }

@@ -28,6 +28,7 @@ pub fn build(
     let declared = declarer.finish();
     let Expander { mut circuit, mut faults, undefined, .. } = expander;
     faults.extend(trace::sources(&mut circuit));
+    trace::currents(&mut circuit);
     trace::declared(&mut circuit, declared);
     faults.extend(unknown::settle(sources, &mut circuit, &undefined));
     circuit.connect();

@@ -2,7 +2,7 @@
 
 use crate::budget::{Budget, Name, Signal, Toleranced};
 use crate::circuit::expand::Expander;
-use crate::circuit::{CurrentInput, DeclaredPair, Element, ElementKind, NetId, Part};
+use crate::circuit::{CurrentInput, DeclaredPair, Element, ElementKind, NetId, Part, SourceResistance};
 use crate::device::{Pin, Rank};
 use crate::diagnostic::{Diagnostic, Label, Severity};
 use crate::quantity::Unit;
@@ -86,8 +86,14 @@ impl<'e, 'a> Declarer<'e, 'a> {
             let capacitance = signal.capacitance.map(|farads| ElementKind::Capacitor(exact(farads.0)));
             self.part(&format!("source {name}"), net, NetId(0), resistance, span);
             self.part(&format!("source {name}"), net, NetId(0), capacitance, span);
-            let current =
-                CurrentInput { name: name.clone(), into: net, from: NetId(0), range, span: Some(span) };
+            let current = CurrentInput {
+                name: name.clone(),
+                into: net,
+                from: NetId(0),
+                range,
+                source: signal.source.map(|ohms| ohms.0),
+                span: Some(span),
+            };
             self.expander.circuit.currents.push(current);
         } else {
             let port = self.series(net, name, signal.source.map(|ohms| ohms.0), span);
@@ -116,6 +122,7 @@ impl<'e, 'a> Declarer<'e, 'a> {
         }
         let resistance = Some(ElementKind::Resistor(exact(ohms)));
         self.part(&format!("source {name}"), port, net, resistance, span);
+        self.expander.circuit.series.push(SourceResistance { open: port, loaded: net, ohms });
         port
     }
 
@@ -247,5 +254,12 @@ fn unknown(name: &Name, what: &str, nearest: Option<&str>) -> Diagnostic {
 
 /// A declared value: no tolerance unless one is declared with it.
 fn exact(value: f64) -> Part {
-    Part { value: Some(value), tolerance: 0.0, rank: Rank::Guaranteed, rating: None, group: None }
+    Part {
+        value: Some(value),
+        tolerance: 0.0,
+        rank: Rank::Guaranteed,
+        rating: None,
+        travel: None,
+        group: None,
+    }
 }

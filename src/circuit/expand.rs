@@ -263,8 +263,19 @@ impl<'a> Expander<'a> {
         level: &Level,
     ) {
         let whole = self.part(&name, Passive::Resistor, stated, level);
-        let half = crate::circuit::Part { value: whole.value.map(|ohms| ohms / 2.0), ..whole };
-        for (ends, part) in [([nets[0], nets[1]], "upper"), ([nets[1], nets[2]], "lower")] {
+        let stated = stated.value.and_then(|value| self.value(value, level));
+        let upper = match (whole.travel, stated) {
+            (Some(_), _) => whole,
+            _ => crate::circuit::Part { value: whole.value.map(|ohms| ohms / 2.0), ..whole },
+        };
+        let rest = |ohms: f64| stated.map_or(ohms, |track| track - ohms);
+        let lower = crate::circuit::Part {
+            value: upper.value.map(rest),
+            travel: upper.travel.map(|(first, second)| (rest(first), rest(second))),
+            ..upper
+        };
+        let halves = [([nets[0], nets[1]], "upper", upper), ([nets[1], nets[2]], "lower", lower)];
+        for (ends, part, half) in halves {
             self.add_element(Element {
                 name: format!("{name}:{part}"),
                 nets: ends.as_slice().into(),

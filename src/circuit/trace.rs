@@ -2,7 +2,7 @@
 
 use crate::circuit::declare::Declared;
 use crate::circuit::values::stated_voltage;
-use crate::circuit::{Circuit, Drive, ElementKind, NetId, Potential, Tie};
+use crate::circuit::{Circuit, CurrentInput, Drive, ElementKind, NetId, Potential, Tie};
 use crate::device::Rank;
 use crate::diagnostic::{Diagnostic, Severity};
 use crate::source::quote;
@@ -76,6 +76,30 @@ fn step(from: Potential, drive: Drive, sign: f64) -> Option<Potential> {
         (low + a.min(b), high + a.max(b))
     });
     Some(Potential { nominal, range, rank: Rank::Guaranteed })
+}
+
+/// Current sources of the netlist as currents that feed nets. A current that the budget declares for the
+/// same net stands before what a source says.
+pub(super) fn currents(circuit: &mut Circuit) {
+    let declared: Vec<NetId> = circuit.currents.iter().map(|current| current.into).collect();
+    for element in &circuit.elements {
+        let (ElementKind::CurrentSource(drive), [from, into]) = (&element.kind, element.nets.as_slice())
+        else {
+            continue;
+        };
+        // A source that draws from a net is counted as what flows into it, with the sign turned.
+        let (into, from, sign) = match *into {
+            Circuit::GROUND => (*from, *into, -1.0),
+            _ => (*into, *from, 1.0),
+        };
+        if into == from || declared.contains(&into) {
+            continue;
+        }
+        let own = drive.span.or(drive.dc.filter(|_| !drive.moves).map(|amps| (amps, amps)));
+        let range = own.map(|(a, b)| ((sign * a).min(sign * b), (sign * a).max(sign * b)));
+        let name = circuit.nets[into.0 as usize].name.clone();
+        circuit.currents.push(CurrentInput { name, into, from, range, source: None, span: element.span });
+    }
 }
 
 /// Takes what the budget declares; it stands before what sources say.

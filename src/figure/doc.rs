@@ -1,8 +1,9 @@
 //! The list of figures; what each one is stands beside its code.
 
 use crate::figure::{
-    Bad, bias_error, feedback_loading, gain_error, gain_spread, input_headroom, loop_gain, offset_error,
-    output_headroom,
+    Bad, bias_error, common_error, feedback_loading, feedback_resistance, gain_error, gain_spread,
+    input_headroom, input_resistance, loop_gain, offset_error, output_current, output_headroom,
+    output_resistance, rejection, resistor_power, source_loading,
 };
 use crate::quantity::Unit;
 
@@ -36,8 +37,12 @@ pub enum Kind {
     GainError,
     /// See [`loop_gain::DOC`].
     LoopGain,
+    /// See [`feedback_resistance::DOC`].
+    FeedbackResistance,
     /// See [`feedback_loading::DOC`].
     FeedbackLoading,
+    /// See [`output_current::DOC`].
+    OutputCurrent,
     /// See [`bias_error::DOC`].
     BiasError,
     /// See [`offset_error::DOC`].
@@ -46,8 +51,20 @@ pub enum Kind {
     OutputHeadroom,
     /// See [`input_headroom::DOC`].
     InputHeadroom,
+    /// See [`input_resistance::DOC`].
+    InputResistance,
+    /// See [`source_loading::DOC`].
+    SourceLoading,
+    /// See [`output_resistance::DOC`].
+    OutputResistance,
     /// See [`gain_spread::DOC`].
     GainSpread,
+    /// See [`rejection::DOC`].
+    Rejection,
+    /// See [`common_error::DOC`].
+    CommonError,
+    /// See [`resistor_power::DOC`].
+    ResistorPower,
 }
 
 impl Kind {
@@ -55,12 +72,20 @@ impl Kind {
     pub const ALL: &'static [Kind] = &[
         Kind::GainError,
         Kind::LoopGain,
+        Kind::FeedbackResistance,
         Kind::FeedbackLoading,
+        Kind::OutputCurrent,
         Kind::BiasError,
         Kind::OffsetError,
         Kind::OutputHeadroom,
         Kind::InputHeadroom,
+        Kind::InputResistance,
+        Kind::SourceLoading,
+        Kind::OutputResistance,
         Kind::GainSpread,
+        Kind::Rejection,
+        Kind::CommonError,
+        Kind::ResistorPower,
     ];
 
     /// What it is.
@@ -68,12 +93,20 @@ impl Kind {
         match self {
             Kind::GainError => &gain_error::DOC,
             Kind::LoopGain => &loop_gain::DOC,
+            Kind::FeedbackResistance => &feedback_resistance::DOC,
             Kind::FeedbackLoading => &feedback_loading::DOC,
+            Kind::OutputCurrent => &output_current::DOC,
             Kind::BiasError => &bias_error::DOC,
             Kind::OffsetError => &offset_error::DOC,
             Kind::OutputHeadroom => &output_headroom::DOC,
             Kind::InputHeadroom => &input_headroom::DOC,
+            Kind::InputResistance => &input_resistance::DOC,
+            Kind::SourceLoading => &source_loading::DOC,
+            Kind::OutputResistance => &output_resistance::DOC,
             Kind::GainSpread => &gain_spread::DOC,
+            Kind::Rejection => &rejection::DOC,
+            Kind::CommonError => &common_error::DOC,
+            Kind::ResistorPower => &resistor_power::DOC,
         }
     }
 

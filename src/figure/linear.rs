@@ -1,7 +1,7 @@
 //! Quantities that are linear in what drives a stage: an output error, a distance to a limit, a current.
 
 use crate::figure::study::{Axis, Quantity};
-use crate::solve::{Excitation, Model, Node, Solved, State, along, values_at};
+use crate::solve::{Excitation, List, Model, Node, Sensitivity, Solved, State, What, along, values_at};
 use smallvec::SmallVec;
 
 /// How a unit of one extra value acts: a list each for currents, errors and port voltages, and directly.
@@ -17,15 +17,25 @@ pub(super) struct Effect {
     pub direct: f64,
 }
 
+/// What a linear quantity reads of a solution.
+#[derive(Debug, Clone, PartialEq)]
+pub(super) enum Reading {
+    /// Voltages, each with its coefficient.
+    Nodes(SmallVec<[(Node, f64); 2]>),
+    /// The current that leaves a node through the first so many branches; the whole current takes in
+    /// the inputs of amplifiers and what later blocks draw.
+    Current { from: Node, branches: usize, whole: bool },
+}
+
 /// `constant + sign * (sum of coefficient * voltage) + sum of direct effects`.
 #[derive(Debug, Clone)]
 pub(super) struct Linear<'m> {
     /// The block.
     pub model: &'m Model,
-    /// What is read: coefficients on node voltages.
-    pub reading: SmallVec<[(Node, f64); 2]>,
-    /// Branches whose current is read instead, from the first node.
-    pub current_from: Option<(Node, usize)>,
+    /// Whether the op amps are ideal.
+    pub twin: bool,
+    /// What is read.
+    pub reading: Reading,
     /// What stands beside the reading.
     pub constant: f64,
     /// What multiplies the reading.
@@ -44,6 +54,7 @@ pub(super) fn axes(model: &Model, ideal_base: bool) -> Vec<Axis> {
         .map(|parameter| Axis {
             base: if ideal_base { parameter.ideal } else { parameter.nominal },
             nominal: parameter.nominal,
+            typical: parameter.nominal,
             low: parameter.low,
             high: parameter.high,
             rank: parameter.rank,
@@ -70,17 +81,54 @@ impl Linear<'_> {
 
     /// Coefficients of the reading at given conductances.
     fn coefficients(&self, solved: &Solved<f64>) -> SmallVec<[(Node, f64); 2]> {
-        let Some((from, count)) = self.current_from else { return self.reading.clone() };
-        let siemens = &solved.values().siemens;
-        let branches = self.model.network.branches[..count].iter().zip(siemens);
-        branches
-            .filter_map(|(branch, siemens)| Some((other_end(branch.a, branch.b, from)?, *siemens)))
-            .flat_map(|(other, siemens)| [(from, siemens), (other, -siemens)])
-            .collect()
+        let (from, branches, whole) = match &self.reading {
+            Reading::Nodes(nodes) => return nodes.clone(),
+            Reading::Current { from, branches, whole } => (*from, *branches, *whole),
+        };
+        let (network, values) = (&self.model.network, solved.values());
+        let mut read = SmallVec::new();
+        let mut flow = |other: Node, siemens: f64| read.extend([(from, siemens), (other, -siemens)]);
+        for (branch, siemens) in network.branches[..branches].iter().zip(&values.siemens) {
+            if let Some(other) = other_end(branch.a, branch.b, from) {
+                flow(other, *siemens);
+            }
+        }
+        if whole {
+            for (amp, values) in network.amps.iter().zip(&values.amps) {
+                if let Some(other) = other_end(amp.plus, amp.minus, from) {
+                    flow(other, values.differential);
+                }
+                [amp.plus, amp.minus]
+                    .into_iter()
+                    .filter(|input| *input == from)
+                    .for_each(|_| flow(Node::Ground, values.common));
+            }
+            let loads = network.loads.iter().filter(|load| Node::Unknown(load.output) == from);
+            read.extend(loads.map(|load| (load.node, load.siemens)));
+        }
+        read
+    }
+
+    /// Adds what the coefficients of a current gain themselves where conductances change.
+    fn add_own(&self, state: &State<f64>, sensitivity: &mut Sensitivity<f64>) {
+        let Reading::Current { from, branches, whole } = self.reading else { return };
+        let across = |other: Node| state.volts(from) - state.volts(other);
+        for (at, branch) in self.model.network.branches[..branches].iter().enumerate() {
+            if let Some(other) = other_end(branch.a, branch.b, from) {
+                sensitivity.siemens[at] += across(other);
+            }
+        }
+        for (at, amp) in self.model.network.amps.iter().enumerate().filter(|_| whole) {
+            if let Some(other) = other_end(amp.plus, amp.minus, from) {
+                sensitivity.amps[at][1] += across(other);
+            }
+            let own = [amp.plus, amp.minus].into_iter().filter(|input| *input == from).count();
+            sensitivity.amps[at][2] += own as f64 * state.volts(from);
+        }
     }
 
     /// Transfers of the reading from every port, with the coefficients of ports that are read directly.
-    pub(super) fn from_ports(&self, solved: &Solved<f64>) -> (Vec<f64>, Vec<f64>, f64) {
+    pub(super) fn from_ports(&self, solved: &Solved<f64>) -> (List<f64>, List<f64>, f64) {
         let coefficients = self.coefficients(solved);
         let weights = solved.adjoint(&coefficients);
         let mut ports = solved.from_ports(&weights);
@@ -112,21 +160,22 @@ impl Quantity for Linear<'_> {
     fn at(&self, point: &[f64], gradient: &mut [f64]) -> Option<f64> {
         let parameters = &self.model.parameters;
         let (own, extras) = point.split_at(parameters.len());
-        let values = values_at(&self.model.nominal, parameters, own);
+        let mut values = values_at(&self.model.nominal, parameters, own);
+        if self.twin {
+            values = values.twin(|amp| self.model.op_amps[amp].is_some());
+        }
         let solved = Solved::new(&self.model.network, values).ok()?;
         let state = solved.forward(&self.driven(extras));
         let coefficients = self.coefficients(&solved);
         let weights = solved.adjoint(&coefficients);
         let mut sensitivity = solved.sensitivity(&state, &weights);
-        if let Some((from, count)) = self.current_from {
-            for (at, branch) in self.model.network.branches[..count].iter().enumerate() {
-                if let Some(other) = other_end(branch.a, branch.b, from) {
-                    sensitivity.siemens[at] += state.volts(from) - state.volts(other);
-                }
-            }
-        }
+        self.add_own(&state, &mut sensitivity);
         along(parameters, solved.values(), &sensitivity, gradient);
-        gradient[..parameters.len()].iter_mut().for_each(|slope| *slope *= self.sign);
+        for (slope, parameter) in gradient.iter_mut().zip(parameters) {
+            // An ideal op amp has no parameters.
+            let counts = !self.twin || matches!(parameter.what, What::Resistors(_));
+            *slope *= if counts { self.sign } else { 0.0 };
+        }
         let ports = solved.from_ports(&weights);
         let direct_port = |port: usize| -> f64 {
             let at = Node::Port(port as u32);

@@ -6,6 +6,7 @@ use crate::figure::study::{Quantity, study};
 use crate::figure::{Bad, Doc, Figure, Kind};
 use crate::quantity::Unit;
 use crate::solve::{Excitation, Solved, along, values_at};
+use smallvec::SmallVec;
 
 /// What the figure is.
 pub const DOC: Doc = Doc {
@@ -31,7 +32,7 @@ impl LoopGain<'_> {
         let solved = Solved::new(&model.network, values_at(&model.nominal, &model.parameters, point)).ok()?;
         let (plus, minus) = self.stage.inputs();
         let weights = solved.adjoint(&[(plus, 1.0), (minus, -1.0)]);
-        let mut errors = vec![0.0; model.network.members];
+        let mut errors = SmallVec::from_elem(0.0, model.network.members);
         errors[self.stage.member] = 1.0;
         let state = solved.forward(&Excitation { errors, ..Excitation::none() });
         let returned = state.volts(plus) - state.volts(minus);
@@ -60,9 +61,10 @@ pub(super) fn compute(stage: &Stage) -> Figure {
     let nominal: Vec<f64> = axes.iter().map(|axis| axis.nominal).collect();
     let sign = quantity.signed(&nominal, &mut vec![0.0; axes.len()]);
     match (study(&quantity, &axes, Bad::Low), sign) {
-        (Some(found), Some(sign)) => {
-            Figure { sign: Some(sign.signum()), ..stage.figure_of(Kind::LoopGain, &axes, &found, &[], false) }
-        }
+        (Some(found), Some(sign)) => Figure {
+            sign: Some(sign.signum()),
+            ..stage.figure_of(Kind::LoopGain, &quantity, &axes, &found, &[], false)
+        },
         _ => Figure::unknown(Kind::LoopGain, "its equations have no solution at the worst corner"),
     }
 }

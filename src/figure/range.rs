@@ -126,9 +126,8 @@ impl Stage<'_> {
             Node::Unknown(at) => currents[at as usize],
             Node::Ground | Node::Port(_) => 0.0,
         };
-        let feeds: Vec<f64> =
-            self.board.currents(self.block).map(|(into, from)| weight(into) - weight(from)).collect();
-        Some(self.board.compose(self.block, &ports, &feeds, constant))
+        let own = self.board.own(self.block, weight, constant);
+        Some(self.board.compose(self.block, &ports, &own))
     }
 
     /// The block's excitation with the primaries at one end of a quantity.
@@ -139,15 +138,19 @@ impl Stage<'_> {
             Err(_) => board.primaries[primary as usize].rest,
         };
         let port = |port| board.row(port).iter().map(|(at, entry)| entry * value(*at)).sum();
-        let mut injections = Vec::new();
+        let mut injections = smallvec::SmallVec::new();
         for ((into, from), at) in board.currents(self.block).zip(&self.cut().currents) {
             let amps = value(board.first_current as u32 + at);
             injections.push((into, amps));
             injections.push((from, -amps));
         }
+        for drain in &self.model().drains {
+            let amps = drain.amps * value(board.primary_of_feed(drain.feed));
+            injections.push((Node::Unknown(drain.output), -amps));
+        }
         Excitation {
             ports: self.model().ports.iter().map(port).collect(),
-            errors: Vec::new(),
+            errors: Default::default(),
             injections,
             constant: true,
         }
@@ -158,6 +161,11 @@ impl Stage<'_> {
         let supply = self.device().supply.map(|supply| supply.positive - supply.negative);
         let situation = Situation { temperature: self.board.circuit.temperature, supply, current };
         spread(self.profile()?, &self.board.catalogue.assumed, key, situation)
+    }
+
+    /// The load at which the device's gain and swing are guaranteed, ohm.
+    pub fn rated_load(&self) -> Option<(f64, Rank)> {
+        self.spread(Key::RatedLoad, 0.0).map(|load| (load.nominal, load.rank))
     }
 
     /// The guaranteed swing at nominal rails under the lightest load: lowest and highest output voltage.

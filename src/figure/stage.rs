@@ -1,23 +1,40 @@
 //! One stage of a composed board: its main port, its transfers, and the figures in turn.
 
 use crate::block::{AmpId, Block, Layout, Role};
-use crate::circuit::{Circuit, NetId, OpAmp};
+use crate::circuit::{Circuit, NetId, OpAmp, SourceResistance};
 use crate::device::{Profile, Rank};
+use crate::figure::legs::Legs;
 use crate::figure::range::Drive;
 use crate::figure::{Figure, Kind, PinVoltages};
 use crate::figure::{
-    bias_error, feedback_loading, gain_error, gain_spread, input_headroom, loop_gain, offset_error,
-    output_headroom,
+    bias_error, common_error, feedback_resistance, gain_error, gain_spread, input_headroom, input_resistance,
+    loop_gain, offset_error, output_headroom, output_resistance, rated, rejection, resistor_power,
+    source_loading,
 };
-use crate::solve::{Board, Device, Excitation, Fault, Model, Node, Solved, Values, Weights};
+use crate::solve::{Board, Device, Excitation, Fault, List, Model, Node, Solved, Values, Weights};
+use smallvec::smallvec;
 
-/// What the budget asks of a stage.
+/// Where the legs of a stage's rejection are.
+#[derive(Debug, Clone, Copy, Default, PartialEq, Eq)]
+pub enum LegsFrom {
+    /// A declared pair alone.
+    #[default]
+    Pair,
+    /// A declared pair, else the two signals of a difference stage.
+    Signals,
+    /// None: the stage is one of a pair, and the one behind it is judged.
+    Nowhere,
+}
+
+/// What the budget asks of a stage, and what its name says of it.
 #[derive(Debug, Clone, Default, PartialEq)]
 pub struct Requirement {
     /// Intended gain from the main port, signed.
     pub gain: Option<f64>,
     /// Intended gains by the name of an input.
     pub gains: Vec<(String, f64)>,
+    /// Which legs its rejection is taken from.
+    pub legs: LegsFrom,
 }
 
 /// The port that a stage's transfer is taken from; indices into the block's ports or currents.
@@ -51,6 +68,8 @@ pub struct Transfer {
     pub ideal: f64,
     /// With the real op amp; `None` for an unknown device.
     pub actual: Option<f64>,
+    /// Least and greatest over the travel of adjustable parts, where there are any.
+    pub adjusts: Option<(f64, f64)>,
 }
 
 /// One stage while its figures are computed.
@@ -66,6 +85,8 @@ pub struct Stage<'b> {
     pub op_amp: u32,
     /// What moves each amplifier's output beyond its signals, volt, with its rank.
     pub deviations: &'b [(f64, Rank)],
+    /// How many random trials each figure gets.
+    pub trials: u32,
 }
 
 /// Everything that is computed of a stage.
@@ -87,7 +108,7 @@ impl<'b> Stage<'b> {
     /// The stage of an amplifier; `None` for a controlled source.
     pub fn of(board: &'b Board<'b>, deviations: &'b [(f64, Rank)], amp: AmpId) -> Option<Stage<'b>> {
         let (block, member) = board.place[amp.0 as usize];
-        Some(Stage { board, block, member, op_amp: board.layout.amp(amp).op_amp?, deviations })
+        Some(Stage { board, block, member, op_amp: board.layout.amp(amp).op_amp?, deviations, trials: 0 })
     }
 
     /// The block's equations.
@@ -147,20 +168,35 @@ impl<'b> Stage<'b> {
         }
     }
 
+    /// The declared source resistance in front of a port, ohm.
+    pub(super) fn series_resistance(&self, port: usize) -> Option<f64> {
+        self.series(port).map(|series| series.ohms)
+    }
+
+    /// The node behind the declared source resistance of a port.
+    pub(super) fn behind(&self, port: usize) -> Option<Node> {
+        self.model().node(self.series(port)?.loaded)
+    }
+
+    fn series(&self, port: usize) -> Option<&'b SourceResistance> {
+        let net = self.model().ports[port].net;
+        self.board.circuit.series.iter().find(|series| series.open == net)
+    }
+
     /// One unit of an input, the others at 0.
     pub(super) fn unit(&self, from: Main) -> Excitation<f64> {
         let ports = self.model().ports.len();
         match from {
             Main::Port(port) => Excitation::port(ports, port),
             Main::Pair(_, positive, negative) => {
-                let mut excitation = Excitation { ports: vec![0.0; ports], ..Excitation::none() };
+                let mut excitation = Excitation { ports: List::from_elem(0.0, ports), ..Excitation::none() };
                 excitation.ports[positive] = 0.5;
                 excitation.ports[negative] = -0.5;
                 excitation
             }
             Main::Current(at) => {
                 let (into, out_of) = self.current(at);
-                Excitation { injections: vec![(into, 1.0), (out_of, -1.0)], ..Excitation::none() }
+                Excitation { injections: smallvec![(into, 1.0), (out_of, -1.0)], ..Excitation::none() }
             }
         }
     }
@@ -198,15 +234,23 @@ impl<'b> Stage<'b> {
         }
         let from = port.map(|transfer| transfer.input.from);
         let intended = port.and_then(|transfer| requirement.intended(&transfer.input.name));
+        let legs = || Legs::of(self, transfers, requirement.legs);
         match kind {
             Kind::GainError => gain_error::compute(self, from, intended),
             Kind::LoopGain => loop_gain::compute(self),
-            Kind::FeedbackLoading => feedback_loading::compute(self, from),
+            Kind::FeedbackResistance => feedback_resistance::compute(self, from),
+            Kind::FeedbackLoading | Kind::OutputCurrent => rated::compute(kind, self, from),
             Kind::BiasError => bias_error::compute(self),
             Kind::OffsetError => offset_error::compute(self, drive),
             Kind::OutputHeadroom => output_headroom::compute(self, drive),
             Kind::InputHeadroom => input_headroom::compute(self, drive),
+            Kind::InputResistance => input_resistance::compute(self, transfers),
+            Kind::SourceLoading => source_loading::compute(self, transfers),
+            Kind::OutputResistance => output_resistance::compute(self),
             Kind::GainSpread => gain_spread::compute(self, from),
+            Kind::Rejection => rejection::compute(self, legs()),
+            Kind::CommonError => common_error::compute(self, legs()),
+            Kind::ResistorPower => resistor_power::compute(self),
         }
     }
 
@@ -221,6 +265,7 @@ impl<'b> Stage<'b> {
         let real = Solved::new(&model.network, model.nominal.clone()).ok().filter(|_| known);
         let weights = real.as_ref().map(|real| real.adjoint(&[(self.output(), 1.0)]));
         let make = |input: Input| Transfer {
+            adjusts: real.as_ref().and_then(|_| self.adjusts(input.from)),
             ideal: self.transfer(&twin, &ideal, input.from),
             actual: real
                 .as_ref()

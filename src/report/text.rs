@@ -10,9 +10,11 @@ mod paper;
 mod snippet;
 mod stages;
 mod table;
+mod trial;
 mod verdict;
 
 pub use ledger::ledger_text;
+pub use trial::trial_text;
 
 use crate::report::{BoardReport, CAUTION_LINE, Report};
 use crate::source::Sources;

@@ -23,8 +23,14 @@ pub struct Subject<'a> {
     pub device: &'a str,
     /// Its device's technology.
     pub technology: Option<crate::device::Technology>,
+    /// Whether it belongs to an instrumentation amplifier.
+    pub grouped: bool,
     /// Output span, with whether it is declared.
     pub span: Option<(f64, bool)>,
+    /// Rated load of its device, ohm, with its rank.
+    pub rated_load: Option<(f64, Rank)>,
+    /// Whether the budget says that the last millivolts at the rail don't matter.
+    pub zero_unused: bool,
     /// Limits that the budget states: slug, value, whether it is a share of the span.
     pub stated: &'a [(String, f64, bool)],
 }
@@ -53,8 +59,11 @@ pub fn rule<'r>(rules: &'r [Rule], subject: &Subject, slug: &str) -> Option<&'r 
         let any = |patterns: &[String], name: &str| {
             patterns.is_empty() || patterns.iter().any(|pattern| matches(pattern, name))
         };
+        // The stage behind an instrumentation amplifier's pair is judged as the whole amplifier.
+        let whole = subject.grouped && slug == "rejection";
+        let topology = if whole { "instrumentation" } else { subject.topology };
         rule.name == slug
-            && any(&scope.topology, subject.topology)
+            && any(&scope.topology, topology)
             && any(&scope.device, subject.device)
             && any(&scope.designator, subject.id)
             && (scope.technology.is_empty()
@@ -75,7 +84,8 @@ pub fn judge(rules: &[Rule], subject: &Subject, figure: &Figure) -> Judged {
             Some((span, false)) => Ok((share * span, Rank::Assumed)),
             None => Err("the output span is not known: declare the range of its signals".to_owned()),
         },
-        Limit::RatedLoad | Limit::TopOfBand => Err("its limit can't be told".to_owned()),
+        Limit::RatedLoad => subject.rated_load.ok_or_else(|| "the profile gives no rated load".to_owned()),
+        Limit::TopOfBand => Err("its limit can't be told".to_owned()),
     };
     let asked = match stated {
         Some((_, value, true)) => Some(Limit::ShareOfSpan(*value)),
@@ -90,6 +100,13 @@ pub fn judge(rules: &[Rule], subject: &Subject, figure: &Figure) -> Judged {
         data: figure.rests_on,
         finding: None,
     };
+    if figure.absent && figure.worst.is_none() {
+        if !judged.stated {
+            judged.status = Status::Within;
+        }
+        judged.finding = figure.needed.map(|needed| unrated(subject, needed));
+        return judged;
+    }
     let limit = match asked.map(resolve) {
         Some(Ok((limit, rank))) => {
             judged.data = judged.data.max(rank);
@@ -135,6 +152,12 @@ pub fn judge(rules: &[Rule], subject: &Subject, figure: &Figure) -> Judged {
         Severity::Note if figure.bound => Status::Unknown,
         Severity::Note => Status::Within,
     };
+    let zero = figure.zero && figure.kind == Kind::OutputHeadroom;
+    if zero && !judged.stated && by != By::Guard && lost_little(subject, worst) {
+        judged.status = if subject.zero_unused { Status::Within } else { Status::Marginal };
+        judged.finding = (!subject.zero_unused).then(|| lost_zero(subject, figure, worst));
+        return judged;
+    }
     let bar = if by == By::Guard { guard.unwrap_or(limit) } else { limit };
     judged.finding = Some(finding(subject, figure, (worst, bar, by), severity, judged.data));
     judged
@@ -178,6 +201,15 @@ fn verdict(figure: &Figure, worst: f64, limit: f64, guard: Option<f64>) -> Broke
 
 /// The worst rank of what has an effect above a tenth of the limit; where the limit is nought, of the guard.
 fn data_rank(figure: &Figure, limit: Option<f64>, guard: Option<f64>) -> Rank {
+    if figure.kind == Kind::Rejection {
+        // The ledger of the rejection is that of the ratio behind its decibels.
+        let ratio = limit.map_or(0.0, |limit| 10f64.powf(-limit / 20.0));
+        let lines = figure
+            .ledger
+            .iter()
+            .filter(|line| line.item != Item::Nominal && ratio / 10.0 < line.effect.abs());
+        return lines.map(|line| line.rank).max().unwrap_or(Rank::Guaranteed);
+    }
     let scale = limit.filter(|limit| *limit != 0.0).or(guard).map_or(0.0, f64::abs);
     let counts = |effect: f64| scale / 10.0 < effect.abs();
     let lines = figure.ledger.iter().filter(|line| line.item != Item::Nominal && counts(line.effect));
@@ -186,10 +218,65 @@ fn data_rank(figure: &Figure, limit: Option<f64>, guard: Option<f64>) -> Rank {
 
 /// A value as sentences show it: relative errors in percent, other ratios bare.
 pub fn shown(kind: Kind, value: f64) -> String {
-    let relative = matches!(kind, Kind::GainError | Kind::GainSpread | Kind::FeedbackLoading);
+    let relative = matches!(
+        kind,
+        Kind::GainError
+            | Kind::GainSpread
+            | Kind::FeedbackLoading
+            | Kind::OutputCurrent
+            | Kind::SourceLoading
+            | Kind::ResistorPower
+    );
     match kind.doc().unit {
         Unit::One if relative => percent(value),
         unit => show(value, unit),
+    }
+}
+
+/// Whether only the last of a single supply's zero is lost: less than 2 % of the span.
+fn lost_little(subject: &Subject, worst: f64) -> bool {
+    const LITTLE: f64 = 0.02;
+    subject.span.is_some_and(|(span, _)| -worst < LITTLE * span)
+}
+
+fn lost_zero(subject: &Subject, figure: &Figure, worst: f64) -> Finding {
+    let lost = show(-worst, Unit::Volt);
+    Finding {
+        rule: "lost-zero".to_owned(),
+        severity: Severity::Warning,
+        stage: Some(subject.id.to_owned()),
+        value: Some(worst),
+        limit: Some(0.0),
+        unit: Some(Unit::Volt),
+        message: format!("{} can't reach the last {lost} above the ground of its single supply", subject.id),
+        cure: Some("lift the zero by a small bias, give a negative rail, or say `zero: unused` in the budget if it doesn't matter".to_owned()),
+        waived: None,
+        labels: labels(subject, figure),
+    }
+}
+
+/// A resistor without rating that dissipates enough to need a word.
+fn unrated(subject: &Subject, (element, power): (crate::circuit::ElementId, f64)) -> Finding {
+    let resistor = subject.circuit.element(element);
+    let watts = show(power, Unit::Watt);
+    Finding {
+        rule: "resistor-power".to_owned(),
+        severity: Severity::Note,
+        stage: Some(subject.id.to_owned()),
+        value: None,
+        limit: None,
+        unit: Some(Unit::One),
+        message: format!(
+            "{} dissipates {watts} at the extremes of its signals and no rating is stated",
+            resistor.name
+        ),
+        cure: Some(format!(
+            "budget: parts: [{{ match: {}, power: ... }}]; more than {} is needed at 0.6 of the rating",
+            resistor.name,
+            show(power / 0.6, Unit::Watt)
+        )),
+        waived: None,
+        labels: resistor.span.map(|span| Label { span, text: watts.clone() }).into_iter().collect(),
     }
 }
 
@@ -213,6 +300,8 @@ fn finding(
         Rank::Assumed => ", on assumed data",
         _ => "",
     };
+    let topology = if subject.topology == "unclassified" { "" } else { subject.topology };
+    let space = if topology.is_empty() { "" } else { ", " };
     Finding {
         rule: doc.slug.to_owned(),
         severity,
@@ -220,55 +309,70 @@ fn finding(
         value: Some(value),
         limit: Some(limit),
         unit: Some(doc.unit),
-        message: format!("{} {} is {number} {case}, {verdict}{assumed}", subject.id, doc.title),
-        cure: Some(cure(subject, figure, worst, limit, data)),
+        message: format!(
+            "{}{space}{topology}: {} is {number} {case}, {verdict}{assumed}",
+            subject.id, doc.title
+        ),
+        cure: Some(cure(subject, figure, (worst, limit, by), data)),
         waived: None,
         labels: labels(subject, figure),
     }
 }
 
-/// What must change and which way: by the item with the largest share, and by how much.
-fn cure(subject: &Subject, figure: &Figure, worst: f64, limit: f64, data: Rank) -> String {
+/// What must change and which way, led by the item with the largest share. Where a nominal value that is
+/// no error breaks the limit, shares of the spread explain nothing, and none is named.
+fn cure(subject: &Subject, figure: &Figure, (worst, limit, by): (f64, f64, By), data: Rank) -> String {
     let shares = figure.shares();
     let lines = figure.ledger.iter().zip(&shares).filter_map(|(line, share)| Some((line, (*share)?)));
-    let pushing: Vec<_> = lines.filter(|(line, _)| pushes(figure, line.effect, worst)).collect();
-    let leading = pushing.iter().max_by(|a, b| a.1.total_cmp(&b.1));
+    let with_worst = lines.filter(|(line, _)| pushes(figure, line.effect, worst));
+    let leading =
+        with_worst.max_by(|a, b| a.1.total_cmp(&b.1)).filter(|_| by == By::Worst || !spreads(figure));
     let doc = figure.kind.doc();
     let short = match doc.bad {
         Bad::Low => limit - worst,
         Bad::High | Bad::Either => worst.abs() - limit.abs(),
     };
-    let name = |item: Item| item.label(subject.circuit);
-    let mut text = match leading.map(|(line, _)| line.item) {
-        Some(Item::Resistor(_) | Item::Group(_)) if doc.bad == Bad::Either => {
-            let resistors = pushing.iter().filter(|(line, share)| {
-                0.1 < *share && matches!(line.item, Item::Resistor(_) | Item::Group(_))
-            });
-            let names: Vec<String> = resistors.map(|(line, _)| name(line.item)).collect();
-            format!("tighten the tolerance of {}, or take a matched network", names.join(" and "))
+    let mut text = String::new();
+    if let Some((line, share)) = leading {
+        let name = line.item.label(subject.circuit);
+        let makes = if line.item == Item::Values { "make" } else { "makes" };
+        let whole = if spreads(figure) { "the spread" } else { "it" };
+        text = format!("{name} {makes} {} of {whole}", portion(share));
+        if 0.0 < short && short < line.effect.abs() && line.item != Item::Values {
+            let factor = line.effect.abs() / (line.effect.abs() - short);
+            text.push_str(&format!(" and must act {} times less", show(factor, Unit::One)));
         }
-        Some(Item::Values) => {
-            "change the ratio of the gain resistors: their nominal values miss the intended gain".to_owned()
-        }
-        Some(Item::Upstream(_)) => format!(
-            "{} comes first: look at the stage that drives it",
-            name(leading.map_or(Item::Nominal, |(line, _)| line.item))
-        ),
-        _ => doc.cure.to_owned(),
-    };
-    if doc.bad == Bad::Low && doc.unit == Unit::Volt && 0.0 < short {
-        text = format!("{} are missing: {text}", show(short, doc.unit));
-    } else if let Some((line, _)) = leading
-        && 0.0 < short
-        && short < line.effect.abs()
-    {
-        let factor = line.effect.abs() / (line.effect.abs() - short);
-        text.push_str(&format!("; {} must act {factor:.2} times less", name(line.item)));
+        text.push_str("; ");
     }
+    text.push_str(remedy(figure.kind, leading.map(|(line, _)| line.item)));
     if data == Rank::Assumed {
         text.push_str(&format!("; declare {} to decide", deciding(subject, figure)));
     }
     text
+}
+
+/// What to do about a figure; against tolerances and values more loop gain is of no use.
+fn remedy(kind: Kind, leading: Option<Item>) -> &'static str {
+    match (kind, leading) {
+        (Kind::GainError, Some(Item::Values)) => {
+            "choose resistors whose ratio gives the intended gain, or correct the gain that the budget intends"
+        }
+        (Kind::GainError, Some(Item::Resistor(_) | Item::Group(_))) => {
+            "take resistors of closer tolerance, or a matched network"
+        }
+        _ => kind.doc().cure,
+    }
+}
+
+/// Whether a figure's ledger starts from a nominal value, so that its shares are shares of the spread from
+/// there to the worst case.
+fn spreads(figure: &Figure) -> bool {
+    figure.ledger.first().is_some_and(|line| line.item == Item::Nominal && line.effect != 0.0)
+}
+
+/// A share as sentences show it.
+fn portion(share: f64) -> String {
+    format!("{:.1} %", share * 100.0)
 }
 
 /// Whether an effect pushes a figure towards its worst value.
@@ -289,7 +393,9 @@ fn deciding(subject: &Subject, figure: &Figure) -> String {
         _ if figure.bound => "the range of its signals".to_owned(),
         Some(Item::Rail(net)) => format!("the tolerance of rail {}", subject.circuit.net(net).name),
         Some(Item::Resistor(_) | Item::Group(_)) => "the tolerance of its resistors".to_owned(),
-        Some(Item::OpAmp(at, what)) => format!("{what} of {}", subject.circuit.op_amps[at as usize].name),
+        Some(Item::OpAmp(at, quality)) => {
+            format!("{} of {}", quality.label(), subject.circuit.op_amps[at as usize].name)
+        }
         Some(Item::Upstream(net)) => {
             format!("what is assumed of the stage that drives {}", subject.circuit.net(net).name)
         }
@@ -307,10 +413,11 @@ fn labels(subject: &Subject, figure: &Figure) -> Vec<Label> {
         if share < LEAST_SHARE {
             continue;
         }
-        let text = match line.item {
-            Item::OpAmp(_, what) => format!("{what} {:.0} %", share * 100.0),
-            _ => format!("{:.0} %", share * 100.0),
+        let what = match line.item {
+            Item::OpAmp(_, quality) => quality.label(),
+            _ => "tolerance",
         };
+        let text = format!("{what} {}", portion(share));
         match found.iter_mut().find(|(known, ..)| *known == element) {
             Some((_, sum, texts)) => {
                 *sum += share;
@@ -321,6 +428,12 @@ fn labels(subject: &Subject, figure: &Figure) -> Vec<Label> {
     }
     found.sort_by(|a, b| b.1.total_cmp(&a.1));
     found.truncate(MOST);
+    if spreads(figure) {
+        found
+            .iter_mut()
+            .filter_map(|(.., texts)| texts.last_mut())
+            .for_each(|text| text.push_str(" of the spread"));
+    }
     let own = subject.circuit.op_amps[subject.op_amp as usize].element;
     if !found.iter().any(|(element, ..)| *element == own) {
         found.push((own, 0.0, vec!["this stage".to_owned()]));

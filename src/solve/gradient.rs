@@ -1,14 +1,15 @@
 //! Sensitivities: one forward and one adjoint solution give the effect of every value.
 
-use crate::solve::{Node, Scalar, Solved, State, Weights};
+use crate::solve::{List, Node, Scalar, Solved, State, Weights};
+use smallvec::SmallVec;
 
 /// What a quantity gains for a unit of each value.
 #[derive(Debug, Clone, Default)]
 pub struct Sensitivity<T> {
     /// To 1/A, 1/Rid, 1/Rcm and Ro of each amplifier, in the network's order.
-    pub amps: Vec<[T; 4]>,
+    pub amps: SmallVec<[[T; 4]; 2]>,
     /// To each branch's conductance, per siemens.
-    pub siemens: Vec<T>,
+    pub siemens: List<T>,
 }
 
 impl<T: Scalar> Solved<'_, T> {
@@ -34,8 +35,8 @@ impl<T: Scalar> Solved<'_, T> {
     }
 
     /// The current that leaves each member's output.
-    pub fn leaving(&self, state: &State<T>) -> Vec<T> {
-        let mut leaving = vec![T::zero(); self.network.members];
+    pub fn leaving(&self, state: &State<T>) -> List<T> {
+        let mut leaving = List::from_elem(T::zero(), self.network.members);
         let mut add = |node: Node, amps: T| {
             if let Node::Unknown(at) = node
                 && let Some(member) = self.member_at[at as usize]
@@ -62,11 +63,13 @@ impl<T: Scalar> Solved<'_, T> {
         leaving
     }
 
-    /// The current that leaves each port into the block, through the branches and amplifiers that count.
+    /// The current that leaves each port into the block, through the first branches and shorts and the
+    /// amplifiers that count.
     pub fn drawn(
         &self,
         state: &State<T>,
-        branch_counts: impl Fn(usize) -> bool,
+        branches: usize,
+        shorts: usize,
         amp_counts: impl Fn(usize) -> bool,
     ) -> Vec<T> {
         let mut drawn = vec![T::zero(); self.network.ports];
@@ -78,10 +81,8 @@ impl<T: Scalar> Solved<'_, T> {
             }
         };
         let volts = |a: Node, b: Node| state.volts(a) - state.volts(b);
-        for (at, (branch, siemens)) in self.network.branches.iter().zip(&self.values.siemens).enumerate() {
-            if branch_counts(at) {
-                flow(branch.a, branch.b, *siemens * volts(branch.a, branch.b));
-            }
+        for (branch, siemens) in self.network.branches[..branches].iter().zip(&self.values.siemens) {
+            flow(branch.a, branch.b, *siemens * volts(branch.a, branch.b));
         }
         for (at, (amp, values)) in self.network.amps.iter().zip(&self.values.amps).enumerate() {
             if amp_counts(at) {
@@ -91,7 +92,7 @@ impl<T: Scalar> Solved<'_, T> {
                 }
             }
         }
-        for (at, short) in self.network.shorts.iter().enumerate() {
+        for (at, short) in self.network.shorts[..shorts].iter().enumerate() {
             flow(short.a, short.b, state.unknowns[self.network.unknowns + at]);
         }
         drawn

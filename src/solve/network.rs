@@ -1,6 +1,7 @@
 //! What a block consists of, as stamps between nodes.
 
-use crate::solve::Scalar;
+use crate::solve::{List, Scalar};
+use smallvec::SmallVec;
 
 /// Where a stamp is tied to.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -55,6 +56,26 @@ pub struct LoadStamp<T> {
     pub siemens: T,
 }
 
+/// What draws current from an output without any voltage of a port.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
+pub enum Feed {
+    /// The voltages of floating sources.
+    Constant,
+    /// A current, by its place among the circuit's.
+    Current(u32),
+}
+
+/// What later blocks and current sources draw from an output by themselves.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Drain {
+    /// The unknown that is the output.
+    pub output: u32,
+    /// What draws.
+    pub feed: Feed,
+    /// Current that leaves the output for one unit of it.
+    pub amps: f64,
+}
+
 /// The structure of a block.
 #[derive(Debug, Clone, Default)]
 pub struct Network<T> {
@@ -98,9 +119,9 @@ impl<T: Scalar> AmpValues<T> {
 #[derive(Debug, Clone, Default)]
 pub struct Values<T> {
     /// In the order of [`Network::amps`].
-    pub amps: Vec<AmpValues<T>>,
+    pub amps: SmallVec<[AmpValues<T>; 2]>,
     /// In the order of [`Network::branches`].
-    pub siemens: Vec<T>,
+    pub siemens: List<T>,
 }
 
 impl<T: Scalar> Values<T> {
@@ -115,11 +136,11 @@ impl<T: Scalar> Values<T> {
 #[derive(Debug, Clone, Default)]
 pub struct Excitation<T> {
     /// Voltage of each port; missing ones are at 0.
-    pub ports: Vec<T>,
+    pub ports: List<T>,
     /// Error in series with each member's input; missing ones are 0.
-    pub errors: Vec<T>,
+    pub errors: SmallVec<[T; 2]>,
     /// Currents into nodes.
-    pub injections: Vec<(Node, T)>,
+    pub injections: SmallVec<[(Node, T); 4]>,
     /// Whether the shorts' own voltages count.
     pub constant: bool,
 }
@@ -127,14 +148,19 @@ pub struct Excitation<T> {
 impl<T: Scalar> Excitation<T> {
     /// A volt at one port.
     pub fn port(ports: usize, port: usize) -> Self {
-        let mut held = vec![T::zero(); ports];
+        let mut held = List::from_elem(T::zero(), ports);
         held[port] = T::one();
-        Excitation { ports: held, errors: Vec::new(), injections: Vec::new(), constant: false }
+        Excitation { ports: held, ..Excitation::none() }
     }
 
     /// Nothing at all.
     pub fn none() -> Self {
-        Excitation { ports: Vec::new(), errors: Vec::new(), injections: Vec::new(), constant: false }
+        Excitation {
+            ports: List::new(),
+            errors: SmallVec::new(),
+            injections: SmallVec::new(),
+            constant: false,
+        }
     }
 }
 
@@ -145,8 +171,8 @@ impl<T: Scalar> Network<T> {
     }
 
     /// The member whose output an unknown is.
-    pub(super) fn member_at(&self) -> Vec<Option<usize>> {
-        let mut at = vec![None; self.unknowns];
+    pub(super) fn member_at(&self) -> List<Option<usize>> {
+        let mut at = List::from_elem(None, self.unknowns);
         for (member, amp) in self.amps[..self.members].iter().enumerate() {
             if let Some(output) = amp.output {
                 at[output as usize] = Some(member);

@@ -1,11 +1,8 @@
 //! The matrix of a block and its solutions, forward and adjoint.
 
-use crate::solve::{Excitation, Network, Node, Scalar, Values};
-use nalgebra::{DMatrix, DVector, Dyn, LU};
-
-/// A pivot under this share of the terms that went into it is rounding: the system is singular.
-/// Found on floating islands whose values round; a sound block keeps its pivots above 1e-13.
-const LEAST_PIVOT: f64 = 2e-15;
+use crate::solve::dense::Square;
+use crate::solve::{Excitation, List, Network, Node, Scalar, Values};
+use smallvec::SmallVec;
 
 /// A block whose equations have no single solution.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -19,24 +16,24 @@ pub struct Singular {
 pub struct Solved<'n, T: Scalar> {
     pub(super) network: &'n Network<T>,
     pub(super) values: Values<T>,
-    pub(super) member_at: Vec<Option<usize>>,
+    pub(super) member_at: List<Option<usize>>,
     /// What the current law of each row is multiplied with: one, or a Ro for an output.
-    pub(super) factor: Vec<T>,
+    pub(super) factor: List<T>,
     /// What each whole row is multiplied with.
-    scale: Vec<f64>,
-    matrix: DMatrix<T>,
-    inverse: DMatrix<T>,
+    scale: List<f64>,
+    matrix: Square<T>,
+    inverse: Square<T>,
 }
 
 /// A solution under one excitation.
 #[derive(Debug, Clone)]
 pub struct State<T: Scalar> {
     /// Voltages, then branch currents.
-    pub unknowns: DVector<T>,
+    pub unknowns: List<T>,
     /// Voltages of the ports.
-    pub ports: Vec<T>,
+    pub ports: List<T>,
     /// What was injected.
-    pub(super) injections: Vec<(Node, T)>,
+    pub(super) injections: SmallVec<[(Node, T); 4]>,
     /// Largest remainder of any row, as a share of its terms.
     pub residual: f64,
 }
@@ -45,11 +42,11 @@ pub struct State<T: Scalar> {
 #[derive(Debug, Clone)]
 pub struct Weights<T> {
     /// Effect of a current into each unknown's node.
-    pub current: Vec<T>,
+    pub current: List<T>,
     /// Effect of an error in series with each member's input.
-    pub error: Vec<T>,
+    pub error: SmallVec<[T; 2]>,
     /// Effect of a volt in each short.
-    pub short: Vec<T>,
+    pub short: SmallVec<[T; 2]>,
 }
 
 impl<T: Scalar> State<T> {
@@ -80,7 +77,7 @@ impl<'n, T: Scalar> Solved<'n, T> {
     /// [`Singular`] where the values leave an unknown undetermined.
     pub fn new(network: &'n Network<T>, values: Values<T>) -> Result<Self, Singular> {
         let member_at = network.member_at();
-        let factor: Vec<T> = member_at
+        let factor: List<T> = member_at
             .iter()
             .map(|member| match member {
                 Some(member) => {
@@ -91,17 +88,15 @@ impl<'n, T: Scalar> Solved<'n, T> {
             })
             .collect();
         let mut matrix = assemble(network, &values, &member_at, &factor);
-        let scale: Vec<f64> = matrix
-            .row_iter()
-            .map(|row| row.iter().fold(0.0f64, |most, entry| most.max(entry.modulus())))
-            .map(|most| if 0.0 < most && most.is_finite() { 1.0 / most } else { 1.0 })
-            .collect();
-        for (mut row, scale) in matrix.row_iter_mut().zip(&scale) {
-            row.scale_mut(*scale);
+        let mut scale = List::from_elem(1.0, matrix.size());
+        for (row, scale) in scale.iter_mut().enumerate() {
+            let most = matrix.largest_in_row(row);
+            if 0.0 < most && most.is_finite() {
+                *scale = 1.0 / most;
+                matrix.scale_row(row, *scale);
+            }
         }
-        let lu = LU::new(matrix.clone());
-        check_pivots(&lu)?;
-        let inverse = lu.try_inverse().ok_or(Singular { unknown: 0 })?;
+        let inverse = matrix.inverse()?;
         Ok(Solved { network, values, member_at, factor, scale, matrix, inverse })
     }
 
@@ -118,7 +113,7 @@ impl<'n, T: Scalar> Solved<'n, T> {
     /// The solution under an excitation, refined once.
     pub fn forward(&self, excitation: &Excitation<T>) -> State<T> {
         let rhs = self.right_side(excitation);
-        let (unknowns, residual) = refine(&self.matrix, &self.inverse, &rhs);
+        let (unknowns, residual) = refine(&self.matrix, &self.inverse, rhs);
         State {
             unknowns,
             ports: excitation.ports.clone(),
@@ -129,15 +124,15 @@ impl<'n, T: Scalar> Solved<'n, T> {
 
     /// The adjoint solution for the quantity `sum of coefficient * unknown`.
     pub fn adjoint(&self, coefficients: &[(Node, T)]) -> Weights<T> {
-        let mut rhs = DVector::from_element(self.network.size(), T::zero());
+        let mut rhs = List::from_elem(T::zero(), self.network.size());
         for (node, coefficient) in coefficients {
             if let Node::Unknown(at) = node {
                 rhs[*at as usize] += *coefficient;
             }
         }
-        let mut lambda = self.inverse.tr_mul(&rhs);
-        let remainder = rhs - self.matrix.tr_mul(&lambda);
-        lambda += self.inverse.tr_mul(&remainder);
+        let mut lambda = self.inverse.transposed_times(&rhs);
+        let remainder = difference(rhs, &self.matrix.transposed_times(&lambda));
+        add(&mut lambda, &self.inverse.transposed_times(&remainder));
         let row = |at: usize| lambda[at] * T::from_real(self.scale[at]);
         let nets = self.network.unknowns;
         let members = &self.network.amps[..self.network.members];
@@ -149,8 +144,8 @@ impl<'n, T: Scalar> Solved<'n, T> {
     }
 
     /// The transfer from every port to the quantity of an adjoint solution.
-    pub fn from_ports(&self, weights: &Weights<T>) -> Vec<T> {
-        let mut transfers = vec![T::zero(); self.network.ports];
+    pub fn from_ports(&self, weights: &Weights<T>) -> List<T> {
+        let mut transfers = List::from_elem(T::zero(), self.network.ports);
         self.network.conductances(&self.values, |a, b, siemens| {
             for (held, other) in [(a, b), (b, a)] {
                 if let Node::Port(port) = held {
@@ -188,11 +183,11 @@ impl<'n, T: Scalar> Solved<'n, T> {
 
     /// The sign of the determinant: whether an odd number of real poles has moved to the right.
     pub(super) fn sign(&self) -> f64 {
-        LU::new(self.matrix.clone()).determinant().real().signum()
+        self.matrix.sign()
     }
 
-    fn right_side(&self, excitation: &Excitation<T>) -> DVector<T> {
-        let mut rhs = DVector::from_element(self.network.size(), T::zero());
+    fn right_side(&self, excitation: &Excitation<T>) -> List<T> {
+        let mut rhs = List::from_elem(T::zero(), self.network.size());
         let held = |node: Node| match node {
             Node::Port(at) => excitation.ports.get(at as usize).copied(),
             Node::Ground | Node::Unknown(_) => None,
@@ -240,15 +235,15 @@ fn assemble<T: Scalar>(
     values: &Values<T>,
     member_at: &[Option<usize>],
     factor: &[T],
-) -> DMatrix<T> {
-    let mut matrix = DMatrix::from_element(network.size(), network.size(), T::zero());
+) -> Square<T> {
+    let mut matrix = Square::zero(network.size());
     network.conductances(values, |a, b, siemens| {
         for (node, other) in [(a, b), (b, a)] {
             if let Node::Unknown(row) = node {
                 let term = factor[row as usize] * siemens;
-                matrix[(row as usize, row as usize)] += term;
+                matrix.add(row as usize, row as usize, term);
                 if let Node::Unknown(column) = other {
-                    matrix[(row as usize, column as usize)] -= term;
+                    matrix.add(row as usize, column as usize, -(term));
                 }
             }
         }
@@ -256,16 +251,16 @@ fn assemble<T: Scalar>(
     for load in &network.loads {
         if let Node::Unknown(column) = load.node {
             let row = load.output as usize;
-            matrix[(row, column as usize)] += factor[row] * load.siemens;
+            matrix.add(row, column as usize, factor[row] * load.siemens);
         }
     }
     for (row, member) in member_at.iter().enumerate() {
         let Some(member) = member else { continue };
         let amp = network.amps[*member];
-        matrix[(row, row)] += values.amps[*member].inverse_gain;
+        matrix.add(row, row, values.amps[*member].inverse_gain);
         for (node, sign) in [(amp.plus, -T::one()), (amp.minus, T::one())] {
             if let Node::Unknown(column) = node {
-                matrix[(row, column as usize)] += sign;
+                matrix.add(row, column as usize, sign);
             }
         }
     }
@@ -273,40 +268,39 @@ fn assemble<T: Scalar>(
         let branch = network.unknowns + at;
         for (node, sign) in [(short.a, T::one()), (short.b, -T::one())] {
             if let Node::Unknown(net) = node {
-                matrix[(net as usize, branch)] += sign * factor[net as usize];
-                matrix[(branch, net as usize)] += sign;
+                matrix.add(net as usize, branch, sign * factor[net as usize]);
+                matrix.add(branch, net as usize, sign);
             }
         }
     }
     matrix
 }
 
-/// Compares each pivot with the sum of the absolute terms that went into it.
-fn check_pivots<T: Scalar>(lu: &LU<T, Dyn, Dyn>) -> Result<(), Singular> {
-    let packed = lu.lu_internal();
-    for at in 0..packed.nrows() {
-        let pivot = packed[(at, at)].modulus();
-        let terms: f64 = (0..at).map(|k| packed[(at, k)].modulus() * packed[(k, at)].modulus()).sum();
-        if !(pivot > LEAST_PIVOT * (pivot + terms) && pivot.is_finite()) {
-            return Err(Singular { unknown: at });
-        }
-    }
-    Ok(())
-}
-
 /// A product with the inverse and one step of refinement; the remainder as a share of its terms.
-fn refine<T: Scalar>(matrix: &DMatrix<T>, inverse: &DMatrix<T>, rhs: &DVector<T>) -> (DVector<T>, f64) {
-    let mut unknowns = inverse * rhs;
-    let remainder = rhs - matrix * &unknowns;
-    unknowns += inverse * remainder;
+fn refine<T: Scalar>(matrix: &Square<T>, inverse: &Square<T>, rhs: List<T>) -> (List<T>, f64) {
+    let mut unknowns = inverse.times(&rhs);
+    let remainder = difference(rhs.clone(), &matrix.times(&unknowns));
+    add(&mut unknowns, &inverse.times(&remainder));
     let mut residual = 0.0f64;
-    for row in 0..matrix.nrows() {
-        let terms = (0..matrix.ncols()).map(|column| matrix[(row, column)] * unknowns[column]);
-        let size: f64 = terms.clone().map(|term| term.modulus()).sum::<f64>() + rhs[row].modulus();
-        let left = terms.fold(rhs[row], |left, term| left - term).modulus();
+    for (row, right) in rhs.iter().enumerate() {
+        let (mut size, mut left) = (right.norm1(), *right);
+        for (column, unknown) in unknowns.iter().enumerate() {
+            let term = matrix.at(row, column) * *unknown;
+            size += term.norm1();
+            left -= term;
+        }
         if 0.0 < size {
-            residual = residual.max(left / size);
+            residual = residual.max(left.norm1() / size);
         }
     }
     (unknowns, residual)
+}
+
+fn difference<T: Scalar>(mut from: List<T>, less: &[T]) -> List<T> {
+    from.iter_mut().zip(less).for_each(|(entry, less)| *entry -= *less);
+    from
+}
+
+fn add<T: Scalar>(to: &mut [T], more: &[T]) {
+    to.iter_mut().zip(more).for_each(|(entry, more)| *entry += *more);
 }

@@ -1,3 +1,5 @@
+//! Rule packs read whole, and what is wrong in them.
+
 use super::read_pack;
 use crate::device::Technology;
 use crate::diagnostic::{Diagnostic, Severity};
