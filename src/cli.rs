@@ -180,12 +180,8 @@ const MOST_TRIALS: u32 = 1_000_000;
 /// A trial value as a netlist would have it.
 fn trial_value(text: &str) -> Result<(String, f64), String> {
     let (name, value) = text.split_once('=').ok_or("write NAME=VALUE, as in R5=49.9k")?;
-    if value.ends_with('M') {
-        return Err(format!(
-            "{value} is milli in a netlist; write {}Meg or {}m",
-            &value[..value.len() - 1],
-            &value[..value.len() - 1]
-        ));
+    if let Some(digits) = value.strip_suffix('M') {
+        return Err(format!("{value} is milli in a netlist; write {digits}Meg or {digits}m"));
     }
     let number = crate::netlist::number(value)
         .ok_or_else(|| format!("{value} is no value; write 49.9k, 4k7 or 100n"))?;

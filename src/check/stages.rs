@@ -4,7 +4,7 @@ use crate::block::{AmpId, Topology};
 use crate::budget::{Budget, Gain, StageBudget};
 use crate::device::Rank;
 use crate::diagnostic::{Diagnostic, Label, Severity};
-use crate::figure::{Figure, Kind, LegsFrom, Main, PinVoltages, Requirement, Review, Stage, Transfer};
+use crate::figure::{Bad, Figure, Kind, LegsFrom, Main, PinVoltages, Requirement, Review, Stage, Transfer};
 use crate::quantity::{Unit, percent};
 use crate::report::{FigureReport, LedgerLine, PinReport, StageReport, TransferReport};
 use crate::rule::{Finding, Judged, Rule, Status, Subject, judge};
@@ -174,9 +174,12 @@ fn figure_report(
 ) -> FigureReport {
     let doc = figure.kind.doc();
     let shares = figure.shares();
-    let direction = figure.worst.zip(figure.nominal).map_or(1.0, |(worst, nominal)| {
-        if doc.bad == crate::figure::Bad::Either { worst } else { worst - nominal }
-    });
+    let direction = match doc.bad {
+        Bad::Either => figure.worst.unwrap_or(1.0),
+        Bad::High => 1.0,
+        Bad::Low if figure.kind == Kind::Rejection => 1.0,
+        Bad::Low => -1.0,
+    };
     let lines = figure.ledger.iter().zip(shares).map(|(line, share)| LedgerLine {
         item: line.item.label(stage.board.circuit),
         effect: line.effect,

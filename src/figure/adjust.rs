@@ -10,13 +10,16 @@ const MOST: usize = 6;
 /// A wiper at the end of its track still has some resistance: this share of the other end's.
 const END: f64 = 1e-6;
 
+/// A branch with its resistance at either end of its travel, ohm.
+type Travel = (usize, (f64, f64));
+
 impl Stage<'_> {
     /// Least and greatest transfer from an input over the travel of the block's adjustable parts; `None`
     /// where it has none.
     pub(super) fn adjusts(&self, from: Main) -> Option<(f64, f64)> {
         let model = self.model();
         // Both halves of a potentiometer move together; they carry one name before the colon.
-        let mut parts: Vec<(&str, Vec<(usize, (f64, f64))>)> = Vec::new();
+        let mut parts: Vec<(&str, Vec<Travel>)> = Vec::new();
         for (branch, id) in model.elements.iter().enumerate() {
             let element = self.board.circuit.element(*id);
             let ElementKind::Resistor(part) = &element.kind else { continue };
@@ -44,7 +47,7 @@ impl Stage<'_> {
     }
 }
 
-fn set(values: &mut Values<f64>, (branch, (first, second)): (usize, (f64, f64)), end: bool) {
+fn set(values: &mut Values<f64>, (branch, (first, second)): Travel, end: bool) {
     let floor = END * first.max(second);
     values.siemens[branch] = 1.0 / if end { second } else { first }.max(floor);
 }

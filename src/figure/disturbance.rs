@@ -75,7 +75,7 @@ impl Stage<'_> {
         let field_effect = matches!(self.part().technology, Some(Technology::Jfet | Technology::Cmos));
         let growth = if field_effect { (above / DOUBLING).exp2() } else { 1.0 };
         let most = if found.covered { found.high } else { found.high * growth };
-        Some((found.nominal * growth, most.max(found.nominal * growth), found.rank))
+        Some(((found.nominal * growth).min(most), most, found.rank))
     }
 
     pub(super) fn missing(&self, key: Key) -> String {

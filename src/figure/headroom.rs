@@ -137,7 +137,7 @@ impl<'b> Stage<'b> {
     pub(super) fn least(&self, kind: Kind, distances: &[Distance], ranges: Rank) -> Figure {
         let lowest =
             distances.iter().map(|distance| distance.nominal + distance.fall).fold(f64::INFINITY, f64::min);
-        let near = |distance: &&Distance| !(lowest < distance.nominal + distance.fall * 1.25);
+        let near = |distance: &&Distance| distance.nominal + distance.fall * 1.25 <= lowest;
         let studied = distances
             .iter()
             .filter(near)

@@ -128,7 +128,7 @@ impl Linear<'_> {
     }
 
     /// Transfers of the reading from every port, with the coefficients of ports that are read directly.
-    pub(super) fn from_ports(&self, solved: &Solved<f64>) -> (List<f64>, List<f64>, f64) {
+    pub(super) fn transfers(&self, solved: &Solved<f64>) -> (List<f64>, List<f64>, f64) {
         let coefficients = self.coefficients(solved);
         let weights = solved.adjoint(&coefficients);
         let mut ports = solved.from_ports(&weights);

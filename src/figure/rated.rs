@@ -2,7 +2,7 @@
 
 use crate::device::{Key, Rank};
 use crate::figure::linear::{Linear, Reading, axes};
-use crate::figure::range::extremes;
+use crate::figure::range::{Extreme, extremes};
 use crate::figure::stage::{Main, Stage};
 use crate::figure::study::{Axis, Quantity, study};
 use crate::figure::{Bad, Figure, Item, Kind, Quality};
@@ -62,19 +62,25 @@ fn share(kind: Kind, stage: &Stage, from: Option<Main>) -> Result<Figure, String
         excitation,
         extras: Vec::new(),
     };
+    // What draws from the output by itself belongs to the whole current, but to no branch.
+    let drained = if kind == Kind::OutputCurrent { stage.drained() } else { Vec::new() };
     let row = stage
         .row_of(&current(1.0, Excitation::none()))
         .ok_or_else(|| "its equations have no solution".to_owned())?;
-    let (excitation, sign, bound) = match extremes(stage.board, &row).0 {
+    let row = stage.board.compose(stage.block, &[], &[row, drained.clone()].concat());
+    let taken = |end: &Extreme| -> f64 {
+        drained.iter().map(|(primary, amps)| amps * stage.value_at(end, *primary)).sum()
+    };
+    let (excitation, sign, beside, bound) = match extremes(stage.board, &row).0 {
         Ok([low, high]) => {
             let end = if high.reached.abs() < low.reached.abs() { &low } else { &high };
-            (stage.excited(end), if end.reached < 0.0 { -1.0 } else { 1.0 }, false)
+            (stage.excited(end), if end.reached < 0.0 { -1.0 } else { 1.0 }, taken(end), false)
         }
         Err(name) => {
             let missing = || format!("the range of {name} is not declared");
             let (excitation, sign) =
                 full_swing(stage, from, &current(1.0, Excitation::none())).ok_or_else(missing)?;
-            (excitation, sign, true)
+            (excitation, sign, taken(&Extreme::default()), true)
         }
     };
     let mut axes = axes(model, false);
@@ -86,7 +92,7 @@ fn share(kind: Kind, stage: &Stage, from: Option<Main>) -> Result<Figure, String
         high: rated.nominal,
         rank: rated.rank,
     });
-    let quantity = Share { current: current(sign, excitation) };
+    let quantity = Share { current: Linear { constant: sign * beside, ..current(sign, excitation) } };
     let found = study(&quantity, &axes, Bad::High)
         .ok_or_else(|| "its equations have no solution at the worst corner".to_owned())?;
     let items = [Item::OpAmp(stage.op_amp, Quality::RatedCurrent)];

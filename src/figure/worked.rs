@@ -23,7 +23,7 @@ impl Stage<'_> {
         let (formula, value) = match (topology, feedback) {
             (Topology::Follower, _) => ("1 (all of the output is fed back)".to_owned(), 1.0),
             (Topology::NonInverting, Some(rf)) => {
-                let rg = self.to_ground(part.inverting)?;
+                let rg = self.grounded(part.inverting)?;
                 (format!("1 + {}/{} = 1 + {} / {}", rf.0, rg.0, ohms(rf.1), ohms(rg.1)), 1.0 + rf.1 / rg.1)
             }
             (Topology::Inverting | Topology::Summing | Topology::Difference, Some(rf)) => {
@@ -201,7 +201,7 @@ impl Stage<'_> {
         self.resistor_at(b, |other| other == a)
     }
 
-    fn to_ground(&self, net: NetId) -> Option<(String, f64)> {
+    fn grounded(&self, net: NetId) -> Option<(String, f64)> {
         self.resistor_at(net, |other| self.board.circuit.net(other).ground)
     }
 

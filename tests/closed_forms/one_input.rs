@@ -52,6 +52,24 @@ fn follower() {
 }
 
 #[test]
+fn follower_with_a_current_sink() {
+    // The sink's 4 mA flow through no resistor, yet they leave the output; with no output resistance they
+    // move nothing.
+    Form {
+        netlist: "XU1 in o VCC VEE o PART\nRL o 0 1k\nI1 o 0 4m",
+        signals: "  in: { range: -1 V .. 2 V }",
+        topology: "follower",
+        main: ("in", 1.0, closed(1.0)),
+        figures: &[
+            ("output-headroom", output_headroom(-closed(1.0), 2.0 * closed(1.0))),
+            ("feedback-loading", 0.0),
+            ("output-current", loading(2.0 * closed(1.0) / 1e3 + 4e-3)),
+        ],
+    }
+    .holds();
+}
+
+#[test]
 fn inverting() {
     let (r1, rf, rp) = (5e3, 100e3, 4.7e3);
     let gain = |r1: f64, rf: f64| -closed(r1 / (r1 + rf)) * rf / (r1 + rf);

@@ -66,6 +66,9 @@ struct Figure<'a> {
     status: &'static str,
     reason: Option<String>,
     data: Rank,
+    /// Unit of the ledger's effects, where it isn't the figure's.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    ledger_unit: Option<&'static str>,
     ledger: Vec<Line<'a>>,
 }
 
@@ -156,6 +159,7 @@ impl<'a> Figure<'a> {
             status: figure.status.word(),
             reason: figure.reason.clone().or_else(|| not_finite(&numbers)),
             data: figure.data,
+            ledger_unit: (figure.ledger_unit != figure.unit).then(|| unit(figure.ledger_unit)),
             ledger: figure.ledger.iter().map(Line::new).collect(),
         }
     }

@@ -12,6 +12,9 @@ use crate::report::{CAUTION_LINE, FigureReport, LedgerLine, PinReport, StageRepo
 /// Columns of a bar that stands for a share of one.
 const BAR: usize = 10;
 
+/// Lines with a smaller share stand together in one.
+const SMALL: f64 = 0.0005;
+
 /// Blocks of one to seven eighths of a column.
 const EIGHTHS: [&str; 8] = ["", "▏", "▎", "▍", "▌", "▋", "▊", "▉"];
 
@@ -143,7 +146,8 @@ fn write_ledger(paper: &mut Paper, figure: &FigureReport) {
     if figure.ledger.is_empty() {
         return;
     }
-    let mut lines: Vec<&LedgerLine> = figure.ledger.iter().collect();
+    let (mut lines, small): (Vec<&LedgerLine>, Vec<&LedgerLine>) =
+        figure.ledger.iter().partition(|line| line.share.is_none_or(|share| SMALL <= share));
     let size = |line: &LedgerLine| line.share.map_or(f64::NEG_INFINITY, |share| -share);
     lines.sort_by(|left, right| size(left).total_cmp(&size(right)));
     let mut table = Table::new([">effect", ">share", "", "item", ">nominal", ">at worst", ""]);
@@ -160,6 +164,20 @@ fn write_ledger(paper: &mut Paper, figure: &FigureReport) {
             shown(|(nominal, _)| nominal),
             shown(|(_, worst)| worst),
             if line.against { "against the worst".to_owned() } else { String::new() },
+        ]);
+    }
+    if !small.is_empty() {
+        let rest: f64 = small.iter().map(|line| line.effect).sum();
+        let words = format!("{} more, each below {}", small.len(), percent(SMALL));
+        let empty = String::new;
+        table.row([
+            value(rest, figure.ledger_unit, figure.bad),
+            empty(),
+            empty(),
+            words,
+            empty(),
+            empty(),
+            empty(),
         ]);
     }
     if let Some((total, words)) = total(figure) {

@@ -51,7 +51,7 @@ fn write_board(paper: &mut Paper, before: &BoardReport, after: &BoardReport) {
 
 fn moves(was: &FigureReport, is: &FigureReport) -> bool {
     match (was.worst, is.worst) {
-        (Some(a), Some(b)) => !((a - b).abs() <= STILL * a.abs().max(b.abs())),
+        (Some(a), Some(b)) => STILL * a.abs().max(b.abs()) < (a - b).abs(),
         (a, b) => a.is_some() != b.is_some() || was.status != is.status,
     }
 }
