@@ -5,6 +5,7 @@ mod json;
 mod markdown;
 mod text;
 
+pub(crate) use harmless::harmless;
 pub use json::json;
 pub use markdown::ledger_markdown;
 pub use text::{Style, ledger_text, text, trial_text};

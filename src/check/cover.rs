@@ -8,6 +8,19 @@ use crate::report::{BoardReport, Coverage};
 use crate::rule::Finding;
 use crate::solve::{Board, Fault};
 
+/// The rules under which an op amp without figures is a finding.
+pub(super) const RULES: [&str; 9] = [
+    "pin-map",
+    "shorted-output",
+    "joined-outputs",
+    "bias-path",
+    "feedback-polarity",
+    "unknown-device",
+    "dc-loop",
+    "open-loop",
+    "not-analysed",
+];
+
 /// An op amp without figures: what to say of it.
 struct Case {
     element: ElementId,

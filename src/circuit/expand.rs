@@ -290,7 +290,12 @@ impl<'a> Expander<'a> {
         let value = stated.value.and_then(|value| {
             let read = level.parameters.value(self.sources, value);
             let fault = |(span, reason)| Diagnostic::at("unreadable-value", Severity::Error, span, reason);
-            read.map_err(|reason| self.faults.push(fault(reason))).ok()
+            let number = read.map_err(|reason| self.faults.push(fault(reason))).ok()?;
+            if let (Value::Expression(span), true) = (value, number < 0.0) {
+                let message = format!("{} is {number:e}; expected a positive value", quote(name));
+                self.faults.push(Diagnostic::at("not-positive-value", Severity::Error, span, message));
+            }
+            Some(number)
         });
         let sound = value.filter(|value| value.is_finite() && (passive == Passive::Resistor || 0.0 < *value));
         let limits = (stated.tolerance, stated.rating);

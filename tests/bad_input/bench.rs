@@ -69,6 +69,21 @@ impl Bench {
         program.output().expect("the program runs")
     }
 
+    /// The same with at most 1 GB of address space.
+    #[cfg(unix)]
+    pub fn confined(&self, arguments: &[&str]) -> Output {
+        let mut shell = Command::new("sh");
+        shell.current_dir(self.folder.path()).args(["-c", "ulimit -v 1000000; exec \"$@\"", "sh"]);
+        shell.arg(env!("CARGO_BIN_EXE_gainsay")).arg("check").args(arguments);
+        shell.output().expect("the program runs")
+    }
+
+    /// The same; where address space can't be bounded, the time is.
+    #[cfg(not(unix))]
+    pub fn confined(&self, arguments: &[&str]) -> Output {
+        self.program(arguments)
+    }
+
     /// Checks `board.cir`.
     pub fn check(&self) -> Outcome {
         self.check_path("board.cir")
