@@ -5,7 +5,10 @@ mod board;
 mod cover;
 mod embedded;
 mod files;
+mod reference;
 mod stages;
+
+pub use reference::{Reference, reference};
 
 use crate::diagnostic::Severity;
 use crate::report::{BoardReport, Report, Verdict};

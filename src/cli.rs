@@ -1,5 +1,7 @@
 //! The command line: what can be asked, and how answers are printed.
 
+mod explain;
+
 use crate::check::{self, Options};
 use crate::diagnostic::Severity;
 use crate::report::{self, Style};
@@ -21,6 +23,8 @@ enum Command {
     Check(Check),
     /// Show one stage in full: transfers, pin voltages, and each figure item by item.
     Ledger(Ledger),
+    /// Explain a figure, a fact or a kind of fault: physics, formula, source, cures, the limits in force.
+    Explain(explain::Explain),
 }
 
 /// What every command that reads a board takes.
@@ -93,6 +97,7 @@ pub fn run() -> u8 {
     match Cli::parse().command {
         Command::Check(check) => run_check(check),
         Command::Ledger(ledger) => run_ledger(&ledger),
+        Command::Explain(asked) => explain::run(&asked),
     }
 }
 

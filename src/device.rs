@@ -33,6 +33,20 @@ pub enum Technology {
     Cmos,
 }
 
+impl Technology {
+    /// Every technology.
+    pub const ALL: [Technology; 3] = [Technology::Bipolar, Technology::Jfet, Technology::Cmos];
+
+    /// The word in files and reports.
+    pub fn word(self) -> &'static str {
+        match self {
+            Technology::Bipolar => "bipolar",
+            Technology::Jfet => "jfet",
+            Technology::Cmos => "cmos",
+        }
+    }
+}
+
 /// What a pin of an op amp does.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Hash)]
 pub enum Pin {
@@ -46,6 +60,23 @@ pub enum Pin {
     NegativeSupply,
     /// Output.
     Output,
+}
+
+impl Pin {
+    /// Every pin.
+    pub const ALL: [Pin; 5] =
+        [Pin::NonInverting, Pin::Inverting, Pin::PositiveSupply, Pin::NegativeSupply, Pin::Output];
+
+    /// The word in files and reports.
+    pub fn word(self) -> &'static str {
+        match self {
+            Pin::NonInverting => "non-inverting",
+            Pin::Inverting => "inverting",
+            Pin::PositiveSupply => "positive-supply",
+            Pin::NegativeSupply => "negative-supply",
+            Pin::Output => "output",
+        }
+    }
 }
 
 /// Declares the parameters of a profile: variant, the key in YAML, the unit, the doc.
@@ -148,6 +179,21 @@ pub enum LoadTo {
     Positive,
     /// The negative rail.
     Negative,
+}
+
+impl LoadTo {
+    /// Every end.
+    pub const ALL: [LoadTo; 4] = [LoadTo::Ground, LoadTo::Middle, LoadTo::Positive, LoadTo::Negative];
+
+    /// The word in files and reports.
+    pub fn word(self) -> &'static str {
+        match self {
+            LoadTo::Ground => "ground",
+            LoadTo::Middle => "middle",
+            LoadTo::Positive => "positive",
+            LoadTo::Negative => "negative",
+        }
+    }
 }
 
 /// Under what an entry holds; `None` where the document doesn't say.

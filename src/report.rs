@@ -3,9 +3,11 @@
 mod harmless;
 mod json;
 mod text;
+mod topic;
 
 pub use json::json;
-pub use text::{Style, ledger_text, text};
+pub use text::{Style, ledger_text, text, topic_text, topics_text};
+pub use topic::{Sort, Topic, TopicRule};
 
 use crate::device::Rank;
 use crate::figure::Bad;

@@ -30,19 +30,11 @@ pub fn read_profiles(sources: &Sources, file: FileId) -> (Vec<Profile>, Vec<Diag
 /// # Errors
 /// The text names none.
 pub fn technology(text: &str) -> Result<Technology, QuantityFault> {
-    let words = [("bipolar", Technology::Bipolar), ("jfet", Technology::Jfet), ("cmos", Technology::Cmos)];
-    choice(text, "a technology", &words)
+    choice(text, "a technology", &Technology::ALL.map(|technology| (technology.word(), technology)))
 }
 
 fn pin(text: &str) -> Result<Pin, QuantityFault> {
-    let words = [
-        ("non-inverting", Pin::NonInverting),
-        ("inverting", Pin::Inverting),
-        ("positive-supply", Pin::PositiveSupply),
-        ("negative-supply", Pin::NegativeSupply),
-        ("output", Pin::Output),
-    ];
-    choice(text, "a pin", &words)
+    choice(text, "a pin", &Pin::ALL.map(|pin| (pin.word(), pin)))
 }
 
 fn devices(reader: &mut Reader, root: &Node) -> Read<Vec<Profile>> {
@@ -225,12 +217,7 @@ fn conditions(reader: &mut Reader, fields: &Fields<'_>) -> Read<Conditions> {
     let Some(node) = fields.get("at") else { return Ok(Conditions::default()) };
     let keys = ["load", "load-to", "sourcing", "sinking", "supply", "temperature"];
     let fields = reader.fields(node, "`at`", &keys)?;
-    let ends = [
-        ("ground", LoadTo::Ground),
-        ("middle", LoadTo::Middle),
-        ("positive", LoadTo::Positive),
-        ("negative", LoadTo::Negative),
-    ];
+    let ends = LoadTo::ALL.map(|end| (end.word(), end));
     Ok(Conditions {
         load: reader.value(&fields, "load", |text| positive(text, Unit::Ohm))?.map(Ohms),
         load_to: reader.value(&fields, "load-to", |text| choice(text, "where the load returns to", &ends))?,

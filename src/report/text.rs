@@ -3,6 +3,7 @@
 //! The verdicts come first, then the findings, the heaviest first, then what was found, what was left out
 //! and what was taken for granted.
 
+mod explain;
 mod findings;
 mod ledger;
 mod number;
@@ -12,6 +13,7 @@ mod stages;
 mod table;
 mod verdict;
 
+pub use explain::{topic_text, topics_text};
 pub use ledger::ledger_text;
 
 use crate::report::{BoardReport, CAUTION_LINE, Report};
