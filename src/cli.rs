@@ -1,5 +1,6 @@
 //! The command line: what can be asked, and how answers are printed.
 
+mod devices;
 mod explain;
 
 use crate::check::{self, Options};
@@ -25,6 +26,8 @@ enum Command {
     Ledger(Ledger),
     /// Explain a figure, a fact or a kind of fault: physics, formula, source, cures, the limits in force.
     Explain(explain::Explain),
+    /// List the device profiles at hand, or show one with all its figures.
+    Devices(devices::Devices),
 }
 
 /// What every command that reads a board takes.
@@ -98,6 +101,7 @@ pub fn run() -> u8 {
         Command::Check(check) => run_check(check),
         Command::Ledger(ledger) => run_ledger(&ledger),
         Command::Explain(asked) => explain::run(&asked),
+        Command::Devices(asked) => devices::run(&asked),
     }
 }
 

@@ -3,9 +3,11 @@
 mod catalogue;
 mod read;
 mod spread;
+mod standing;
 
 pub use read::{read_assumed, read_pins, read_profiles, technology};
 pub use spread::{Situation, Spread, bounds, spread};
+pub use standing::Standing;
 
 use crate::quantity::{Amps, Celsius, Farads, Ohms, Unit, Volts};
 use crate::source::Span;
@@ -237,6 +239,8 @@ pub struct Profile {
     pub aliases: Vec<String>,
     /// What it is built of.
     pub technology: Technology,
+    /// Whether it stands for a class of devices: then all its figures are assumed.
+    pub generic: bool,
     /// Op amps in one package.
     pub sections: u32,
     /// Order of the pins of one section's call; empty where the profile gives none.

@@ -6,7 +6,7 @@ mod text;
 mod topic;
 
 pub use json::json;
-pub use text::{Style, ledger_text, text, topic_text, topics_text};
+pub use text::{Style, device_text, devices_text, ledger_text, text, topic_text, topics_text};
 pub use topic::{Sort, Topic, TopicRule};
 
 use crate::device::Rank;

@@ -4,6 +4,8 @@
 #[allow(dead_code)]
 mod support;
 
+#[path = "commands/devices.rs"]
+mod devices;
 #[path = "commands/explain.rs"]
 mod explain;
 #[path = "commands/slugs.rs"]

@@ -54,7 +54,8 @@ fn devices(reader: &mut Reader, root: &Node) -> Read<Vec<Profile>> {
 }
 
 fn profile(reader: &mut Reader, node: &Node) -> Read<Option<Profile>> {
-    let keys = ["device", "aliases", "technology", "sections", "pins", "source", "notes", "parameters"];
+    let keys =
+        ["device", "aliases", "technology", "generic", "sections", "pins", "source", "notes", "parameters"];
     let fields = reader.fields(node, "a device", &keys)?;
     for key in ["device", "technology", "source", "parameters"] {
         reader.need(&fields, key);
@@ -62,6 +63,9 @@ fn profile(reader: &mut Reader, node: &Node) -> Read<Option<Profile>> {
     let name = reader.name(&fields, "device")?;
     let aliases = reader.names(&fields, "aliases")?.into_iter().map(|alias| alias.text).collect();
     let technology = reader.value(&fields, "technology", technology)?;
+    let truth = [("true", true), ("false", false)];
+    let generic =
+        reader.value(&fields, "generic", |text| choice(text, "a truth value", &truth))?.unwrap_or(false);
     let sections = reader.value(&fields, "sections", sections)?.unwrap_or(1);
     let pins = read_pins(reader, &fields)?.unwrap_or_default();
     let source = reader.text(&fields, "source")?;
@@ -72,6 +76,7 @@ fn profile(reader: &mut Reader, node: &Node) -> Read<Option<Profile>> {
         name: name.text,
         aliases,
         technology,
+        generic,
         sections,
         pins,
         source,

@@ -3,6 +3,7 @@
 //! The verdicts come first, then the findings, the heaviest first, then what was found, what was left out
 //! and what was taken for granted.
 
+mod devices;
 mod explain;
 mod findings;
 mod ledger;
@@ -13,6 +14,7 @@ mod stages;
 mod table;
 mod verdict;
 
+pub use devices::{device_text, devices_text};
 pub use explain::{topic_text, topics_text};
 pub use ledger::ledger_text;
 
