@@ -2,6 +2,7 @@
 
 mod devices;
 mod explain;
+mod stages;
 
 use crate::check::{self, Options};
 use crate::diagnostic::Severity;
@@ -24,6 +25,8 @@ enum Command {
     Check(Check),
     /// Show one stage in full: transfers, pin voltages, and each figure item by item.
     Ledger(Ledger),
+    /// Show what was found: stages with their topology and transfers, what each can do, what was left out.
+    Stages(stages::Stages),
     /// Explain a figure, a fact or a kind of fault: physics, formula, source, cures, the limits in force.
     Explain(explain::Explain),
     /// List the device profiles at hand, or show one with all its figures.
@@ -42,6 +45,18 @@ struct Board {
     /// Further rule packs. Later entries win.
     #[arg(long, value_name = "FILE")]
     rules: Vec<PathBuf>,
+}
+
+impl Board {
+    /// The options of a run over such boards; paths and the rest are left to the command.
+    fn options(&self) -> Options {
+        Options {
+            budget: self.budget.clone(),
+            devices: self.devices.clone(),
+            rules: self.rules.clone(),
+            ..Options::default()
+        }
+    }
 }
 
 #[derive(Debug, clap::Args)]
@@ -100,6 +115,7 @@ pub fn run() -> u8 {
     match Cli::parse().command {
         Command::Check(check) => run_check(check),
         Command::Ledger(ledger) => run_ledger(&ledger),
+        Command::Stages(asked) => stages::run(asked),
         Command::Explain(asked) => explain::run(&asked),
         Command::Devices(asked) => devices::run(&asked),
     }
@@ -113,11 +129,9 @@ fn run_check(asked: Check) -> u8 {
     };
     let options = Options {
         paths: asked.paths,
-        budget: asked.board.budget,
-        devices: asked.board.devices,
-        rules: asked.board.rules,
         fail_on: Some(fail_on),
         complete: asked.complete,
+        ..asked.board.options()
     };
     let outcome = check::run(&options);
     complain(&outcome.unusable);
@@ -129,13 +143,7 @@ fn run_check(asked: Check) -> u8 {
 }
 
 fn run_ledger(asked: &Ledger) -> u8 {
-    let options = Options {
-        paths: vec![asked.netlist.clone()],
-        budget: asked.board.budget.clone(),
-        devices: asked.board.devices.clone(),
-        rules: asked.board.rules.clone(),
-        ..Options::default()
-    };
+    let options = Options { paths: vec![asked.netlist.clone()], ..asked.board.options() };
     let outcome = check::run(&options);
     complain(&outcome.unusable);
     let stages = || outcome.report.boards.iter().flat_map(|board| &board.stages);

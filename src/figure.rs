@@ -24,6 +24,7 @@ mod output_resistance;
 mod range;
 mod rated;
 mod ratio;
+mod reach;
 mod rejection;
 mod resistor_power;
 mod source_loading;
@@ -34,6 +35,7 @@ pub use deviation::deviations;
 pub use doc::{Doc, Kind};
 pub use ledger::{Item, Line};
 pub use range::{Extreme, PinVoltages};
+pub use reach::{Edge, InputRange, Reach};
 pub use stage::{Input, LegsFrom, Main, Requirement, Review, Stage, Transfer, explain};
 
 use crate::circuit::ElementId;

@@ -6,11 +6,11 @@ mod text;
 mod topic;
 
 pub use json::json;
-pub use text::{Style, device_text, devices_text, ledger_text, text, topic_text, topics_text};
+pub use text::{Style, device_text, devices_text, ledger_text, stages_text, text, topic_text, topics_text};
 pub use topic::{Sort, Topic, TopicRule};
 
 use crate::device::Rank;
-use crate::figure::Bad;
+use crate::figure::{Bad, InputRange};
 use crate::quantity::Unit;
 use crate::rule::{Finding, Status};
 
@@ -98,8 +98,25 @@ pub struct StageReport {
     pub local: Option<Vec<TransferReport>>,
     /// Voltages where the ranges drive the output lowest and highest.
     pub pins: Vec<PinReport>,
+    /// What it can do where nothing is declared; `None` where nobody asked.
+    pub reach: Option<ReachReport>,
     /// Figures in the order of their list.
     pub figures: Vec<FigureReport>,
+}
+
+/// What a stage can do where nothing is declared.
+#[derive(Debug, Clone, PartialEq)]
+pub struct ReachReport {
+    /// The main input, where there is one.
+    pub main: Option<String>,
+    /// `V` or `A`.
+    pub unit: Unit,
+    /// Its linear range, or why it can't be told.
+    pub input: Result<InputRange, String>,
+    /// Least load to ground in ohm, or why it can't be told.
+    pub load: Result<f64, String>,
+    /// How far the data can be trusted.
+    pub data: Rank,
 }
 
 /// A transfer from an input to the stage's output.

@@ -10,6 +10,8 @@ mod devices;
 mod explain;
 #[path = "commands/slugs.rs"]
 mod slugs;
+#[path = "commands/stages.rs"]
+mod stages;
 
 use gainsay::report::Style;
 use std::process::Command;

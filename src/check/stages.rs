@@ -4,9 +4,9 @@ use crate::block::{AmpId, Topology};
 use crate::budget::{Budget, Gain, StageBudget};
 use crate::device::Rank;
 use crate::diagnostic::{Diagnostic, Label, Severity};
-use crate::figure::{Figure, LegsFrom, Main, PinVoltages, Requirement, Stage, Transfer};
-use crate::quantity::percent;
-use crate::report::{FigureReport, LedgerLine, PinReport, StageReport, TransferReport};
+use crate::figure::{Figure, LegsFrom, Main, PinVoltages, Requirement, Review, Stage, Transfer};
+use crate::quantity::{Unit, percent};
+use crate::report::{FigureReport, LedgerLine, PinReport, ReachReport, StageReport, TransferReport};
 use crate::rule::{Finding, Judged, Rule, Status, Subject, judge};
 use crate::solve::{Board, PrimaryKind};
 use crate::source::matches;
@@ -109,6 +109,7 @@ fn one(
         transfers: transfers(&review.transfers, review.main),
         local: stage.local().map(|local| transfers(&local, None)),
         pins: review.pins.iter().map(pin).collect(),
+        reach: Some(reach(&review)),
         figures,
     };
     Judgement { report, findings, op_amp: stage.op_amp }
@@ -139,6 +140,18 @@ fn transfers(found: &[Transfer], main: Option<usize>) -> Vec<TransferReport> {
         error: transfer.actual.filter(|_| transfer.ideal != 0.0).map(|actual| actual / transfer.ideal - 1.0),
     };
     order.map(|at| report(&found[at])).collect()
+}
+
+fn reach(review: &Review) -> ReachReport {
+    let main = review.main.map(|at| &review.transfers[at].input);
+    let current = main.is_some_and(|input| matches!(input.from, Main::Current(_)));
+    ReachReport {
+        main: main.map(|input| input.name.clone()),
+        unit: if current { Unit::Ampere } else { Unit::Volt },
+        input: review.reach.input.clone(),
+        load: review.reach.load.clone(),
+        data: review.reach.rank,
+    }
 }
 
 fn pin(pins: &PinVoltages) -> PinReport {

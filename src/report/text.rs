@@ -10,6 +10,7 @@ mod ledger;
 mod number;
 mod paper;
 mod snippet;
+mod survey;
 mod stages;
 mod table;
 mod verdict;
@@ -17,6 +18,7 @@ mod verdict;
 pub use devices::{device_text, devices_text};
 pub use explain::{topic_text, topics_text};
 pub use ledger::ledger_text;
+pub use survey::stages_text;
 
 use crate::report::{BoardReport, CAUTION_LINE, Report};
 use crate::source::Sources;

@@ -157,6 +157,7 @@ pub fn pressure_stage() -> StageReport {
         }],
         local: None,
         pins: vec![pins("low", -0.02), pins("high", 0.02)],
+        reach: None,
         figures: vec![gain_error, loop_gain, loading, headroom, rejection],
     }
 }
@@ -194,6 +195,7 @@ fn oxygen_stage() -> StageReport {
         }],
         local: None,
         pins: Vec::new(),
+        reach: None,
         figures: vec![gain_error],
     }
 }
@@ -215,6 +217,7 @@ fn unknown_stage() -> StageReport {
         }],
         local: None,
         pins: Vec::new(),
+        reach: None,
         figures: Vec::new(),
     }
 }
