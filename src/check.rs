@@ -10,6 +10,7 @@ mod stages;
 
 pub use reference::{Reference, reference};
 
+use crate::device::Technology;
 use crate::diagnostic::Severity;
 use crate::report::{BoardReport, Report, Verdict};
 use crate::source::Sources;
@@ -26,6 +27,8 @@ pub struct Options {
     pub devices: Vec<PathBuf>,
     /// Further rule packs.
     pub rules: Vec<PathBuf>,
+    /// What op amps of unknown devices are taken to be built of.
+    pub assume_technology: Option<Technology>,
     /// Unwaived findings of this severity or above fail; an error where left out.
     pub fail_on: Option<Severity>,
     /// Whether an incomplete run fails.

@@ -5,6 +5,7 @@ mod explain;
 mod stages;
 
 use crate::check::{self, Options};
+use crate::device::Technology;
 use crate::diagnostic::Severity;
 use crate::report::{self, Style};
 use clap::{Parser, Subcommand, ValueEnum};
@@ -45,6 +46,30 @@ struct Board {
     /// Further rule packs. Later entries win.
     #[arg(long, value_name = "FILE")]
     rules: Vec<PathBuf>,
+    /// Judge op amps of unknown devices by the bounds of a class; all that rests on them is assumed.
+    #[arg(long, value_enum, value_name = "CLASS")]
+    assume_technology: Option<Class>,
+}
+
+/// What an op amp is built of.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, ValueEnum)]
+enum Class {
+    /// Bipolar transistors at the input.
+    Bipolar,
+    /// Junction field-effect transistors at the input.
+    Jfet,
+    /// MOS transistors at the input.
+    Cmos,
+}
+
+impl Class {
+    fn technology(self) -> Technology {
+        match self {
+            Class::Bipolar => Technology::Bipolar,
+            Class::Jfet => Technology::Jfet,
+            Class::Cmos => Technology::Cmos,
+        }
+    }
 }
 
 impl Board {
@@ -54,6 +79,7 @@ impl Board {
             budget: self.budget.clone(),
             devices: self.devices.clone(),
             rules: self.rules.clone(),
+            assume_technology: self.assume_technology.map(Class::technology),
             ..Options::default()
         }
     }

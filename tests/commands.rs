@@ -12,6 +12,8 @@ mod explain;
 mod slugs;
 #[path = "commands/stages.rs"]
 mod stages;
+#[path = "commands/technology.rs"]
+mod technology;
 
 use gainsay::report::Style;
 use std::process::Command;

@@ -36,7 +36,7 @@ pub(super) fn check(sources: &mut Sources, packs: &Packs, options: &Options, pat
         findings: Vec::new(),
     };
     let mut unusable = Vec::new();
-    let (budget, faults) = match budget_path(options, path) {
+    let (mut budget, faults) = match budget_path(options, path) {
         None => (Budget::default(), Vec::new()),
         Some(budget_path) => {
             let name = budget_path.display().to_string();
@@ -53,6 +53,7 @@ pub(super) fn check(sources: &mut Sources, packs: &Packs, options: &Options, pat
     if faults.iter().any(|fault| fault.severity == Severity::Error) {
         unusable.push(format!("{}: it has faults", report.budget.clone().unwrap_or_default()));
     }
+    budget.assumed_technology = options.assume_technology;
     report.name = budget.board.clone();
     report.findings.extend(faults.into_iter().map(Finding::from));
     match files::load(sources, path, &shown) {

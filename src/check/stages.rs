@@ -11,6 +11,7 @@ use crate::rule::{Finding, Judged, Rule, Status, Subject, judge};
 use crate::solve::{Board, PrimaryKind};
 use crate::source::matches;
 use rayon::prelude::*;
+use std::collections::BTreeSet;
 
 /// A stage judged.
 pub(super) struct Judgement {
@@ -70,6 +71,7 @@ fn one(
         _ => LegsFrom::Pair,
     };
     let review = stage.review(&requirement);
+    let known = stage.profile().filter(|profile| !profile.generic);
     let device = stage.profile().map_or(part.model.as_str(), |profile| profile.name.as_str());
     let stated: Vec<(String, f64, bool)> = asked
         .iter()
@@ -102,7 +104,7 @@ fn one(
     }
     let report = StageReport {
         id: part.name.clone(),
-        device: device.to_owned(),
+        device: known.map_or(part.model.as_str(), |profile| profile.name.as_str()).to_owned(),
         topology: topology.word().to_owned(),
         group,
         output: stage.board.circuit.net(part.output).name.clone(),
@@ -258,10 +260,27 @@ fn declaration(reason: &str) -> Option<String> {
         .then(|| "give the figure in a profile of your own, with --devices".to_owned())
 }
 
+/// Devices of which only the class is known, one sentence each.
+fn classes(board: &Board) -> Vec<String> {
+    let mut said: Vec<String> = Vec::new();
+    let mut models: BTreeSet<String> = BTreeSet::new();
+    for op_amp in &board.circuit.op_amps {
+        let Some(profile) = op_amp.profile.map(|at| &board.catalogue.profiles[at]) else { continue };
+        if profile.generic && models.insert(op_amp.model.to_ascii_lowercase()) {
+            let technology = profile.technology.word();
+            said.push(format!(
+                "{} is a {technology} op amp within the bounds of {}",
+                op_amp.model, profile.name
+            ));
+        }
+    }
+    said
+}
+
 /// What was assumed because neither netlist nor budget says it, one sentence each.
 pub(super) fn assumed(board: &Board, budget: &Budget) -> Vec<String> {
     let assumed = &board.catalogue.assumed;
-    let mut said = Vec::new();
+    let mut said = classes(board);
     let resistors = board.models.iter().flat_map(|model| &model.parameters).any(|parameter| {
         matches!(parameter.what, crate::solve::What::Resistors(_)) && parameter.rank == Rank::Assumed
     });
