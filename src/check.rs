@@ -5,6 +5,7 @@ mod board;
 mod cover;
 mod embedded;
 mod files;
+mod names;
 mod reference;
 mod stages;
 
@@ -31,6 +32,12 @@ pub struct Options {
     pub assume_technology: Option<Technology>,
     /// Unwaived findings of this severity or above fail; an error where left out.
     pub fail_on: Option<Severity>,
+    /// Whether every value's origin and formula is told.
+    pub detail: bool,
+    /// Random trials of each figure.
+    pub trials: u32,
+    /// Values that stand for the netlist's own: element and value as written.
+    pub with: Vec<(String, f64)>,
     /// Whether an incomplete run fails.
     pub complete: bool,
 }

@@ -71,6 +71,8 @@ pub struct Part {
     pub rank: Rank,
     /// Rated power (watt) or voltage (volt), where stated.
     pub rating: Option<f64>,
+    /// Value at either end of its travel, ohm, where it is adjustable.
+    pub travel: Option<(f64, f64)>,
     /// Index of the matched group it belongs to, with the tolerance of the group's ratios.
     pub group: Option<(u32, f64)>,
 }
@@ -286,6 +288,20 @@ impl Circuit {
     /// The voltage of a net, where it is known.
     pub fn potential(&self, net: NetId) -> Option<Potential> {
         self.potentials[net.0 as usize]
+    }
+
+    /// Puts another value on a resistor, capacitor or inductor; whether there is one of that name.
+    pub fn set_value(&mut self, name: &str, value: f64) -> bool {
+        let mut found = false;
+        for element in self.elements.iter_mut().filter(|element| element.name.eq_ignore_ascii_case(name)) {
+            if let ElementKind::Resistor(part) | ElementKind::Capacitor(part) | ElementKind::Inductor(part) =
+                &mut element.kind
+            {
+                part.value = Some(value).filter(|value| 0.0 < *value && value.is_finite());
+                found = true;
+            }
+        }
+        found
     }
 
     /// Joins nets and elements into the graph; nothing may be added afterwards.

@@ -101,6 +101,10 @@ struct Check {
     /// Fail as well where an op amp is skipped or a stated limit can't be judged.
     #[arg(long)]
     complete: bool,
+    /// Try another value, as in R5=49.9k, and show figures and findings before and after. May be repeated;
+    /// nothing is written.
+    #[arg(long, value_name = "NAME=VALUE", value_parser = trial_value)]
+    with: Vec<(String, f64)>,
     /// Show every note in full.
     #[arg(long)]
     all: bool,
@@ -114,6 +118,12 @@ struct Ledger {
     /// The stage's id, as the check shows it.
     #[arg(value_name = "STAGE")]
     stage: String,
+    /// How it is written.
+    #[arg(long, value_enum, default_value = "text")]
+    format: Page,
+    /// Random trials of each figure beside worst case and RSS; the same numbers at every run.
+    #[arg(long, value_name = "N")]
+    trials: Option<u32>,
     #[command(flatten)]
     board: Board,
 }
@@ -124,6 +134,14 @@ enum Format {
     Text,
     /// For programs: schema gainsay-report/1.
     Json,
+}
+
+#[derive(Debug, Clone, Copy, PartialEq, Eq, ValueEnum)]
+enum Page {
+    /// For a terminal.
+    Text,
+    /// For a review record.
+    Markdown,
 }
 
 #[derive(Debug, Clone, Copy, PartialEq, Eq, ValueEnum)]
@@ -159,6 +177,9 @@ fn run_check(asked: Check) -> u8 {
         complete: asked.complete,
         ..asked.board.options()
     };
+    if !asked.with.is_empty() {
+        return run_trial(&options, &asked.with, asked.format);
+    }
     let outcome = check::run(&options);
     complain(&outcome.unusable);
     let text = match asked.format {
@@ -169,17 +190,22 @@ fn run_check(asked: Check) -> u8 {
 }
 
 fn run_ledger(asked: &Ledger) -> u8 {
-    let options = Options { paths: vec![asked.netlist.clone()], ..asked.board.options() };
+    let options = Options {
+        paths: vec![asked.netlist.clone()],
+        detail: true,
+        trials: asked.trials.unwrap_or(0).min(MOST_TRIALS),
+        ..asked.board.options()
+    };
     let outcome = check::run(&options);
     complain(&outcome.unusable);
     let stages = || outcome.report.boards.iter().flat_map(|board| &board.stages);
     match stages().find(|stage| stage.id.eq_ignore_ascii_case(&asked.stage)) {
         Some(stage) => {
-            if print(&report::ledger_text(stage, style(true))) && outcome.unusable.is_empty() {
-                0
-            } else {
-                2
-            }
+            let page = match asked.format {
+                Page::Text => report::ledger_text(stage, style(true)),
+                Page::Markdown => report::ledger_markdown(stage),
+            };
+            if print(&page) && outcome.unusable.is_empty() { 0 } else { 2 }
         }
         None => {
             let known: Vec<&str> = stages().map(|stage| stage.id.as_str()).collect();
@@ -191,6 +217,32 @@ fn run_ledger(asked: &Ledger) -> u8 {
             2
         }
     }
+}
+
+/// More trials than this tell nothing more.
+const MOST_TRIALS: u32 = 1_000_000;
+
+/// A trial value as a netlist would have it.
+fn trial_value(text: &str) -> Result<(String, f64), String> {
+    let (name, value) = text.split_once('=').ok_or("write NAME=VALUE, as in R5=49.9k")?;
+    if let Some(digits) = value.strip_suffix('M') {
+        return Err(format!("{value} is milli in a netlist; write {digits}Meg or {digits}m"));
+    }
+    let number = crate::netlist::number(value)
+        .ok_or_else(|| format!("{value} is no value; write 49.9k, 4k7 or 100n"))?;
+    Ok((name.to_owned(), number.value))
+}
+
+/// Checks with the netlist's own values and with the trial values.
+fn run_trial(options: &Options, with: &[(String, f64)], format: Format) -> u8 {
+    let before = check::run(options);
+    let after = check::run(&Options { with: with.to_vec(), ..options.clone() });
+    complain(&after.unusable);
+    let text = match format {
+        Format::Json => report::json(&after.report, &after.sources),
+        Format::Text => report::trial_text(&before.report, &after.report, with, style(false)),
+    };
+    if print(&text) { after.status() } else { 2 }
 }
 
 /// Says on the error stream what can't be read or used.

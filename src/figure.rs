@@ -1,5 +1,6 @@
 //! Figures: what is computed of each stage. One file a figure, with its doc, formula, source and ledger.
 
+mod adjust;
 mod bias_error;
 mod common_error;
 mod deviation;
@@ -18,9 +19,11 @@ mod linear;
 mod local;
 mod loop_gain;
 mod offset_error;
+mod origin;
 mod output_current;
 mod output_headroom;
 mod output_resistance;
+mod quality;
 mod range;
 mod rated;
 mod ratio;
@@ -30,13 +33,17 @@ mod resistor_power;
 mod source_loading;
 mod stage;
 mod study;
+mod trials;
+mod worked;
 
 pub use deviation::deviations;
 pub use doc::{Doc, Kind};
 pub use ledger::{Item, Line};
+pub use quality::Quality;
 pub use range::{Extreme, PinVoltages};
 pub use reach::{Edge, InputRange, Reach};
 pub use stage::{Input, LegsFrom, Main, Requirement, Review, Stage, Transfer, explain};
+pub use trials::Percentiles;
 
 use crate::circuit::ElementId;
 use crate::device::Rank;
@@ -77,6 +84,8 @@ pub struct Figure {
     pub needed: Option<(ElementId, f64)>,
     /// Whether only the ground end of a single supply is the least distance.
     pub zero: bool,
+    /// Random trials, where they were asked for.
+    pub trials: Option<Percentiles>,
     /// What makes it up.
     pub ledger: Vec<Line>,
 }
@@ -96,6 +105,7 @@ impl Figure {
             absent: false,
             needed: None,
             zero: false,
+            trials: None,
             ledger: Vec::new(),
         }
     }

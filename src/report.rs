@@ -2,15 +2,19 @@
 
 mod harmless;
 mod json;
+mod markdown;
 mod text;
 mod topic;
 
 pub use json::json;
-pub use text::{Style, device_text, devices_text, ledger_text, stages_text, text, topic_text, topics_text};
+pub use markdown::ledger_markdown;
+pub use text::{
+    Style, device_text, devices_text, ledger_text, stages_text, text, topic_text, topics_text, trial_text,
+};
 pub use topic::{Sort, Topic, TopicRule};
 
 use crate::device::Rank;
-use crate::figure::{Bad, InputRange};
+use crate::figure::{Bad, InputRange, Percentiles};
 use crate::quantity::Unit;
 use crate::rule::{Finding, Status};
 
@@ -94,6 +98,8 @@ pub struct StageReport {
     pub output: String,
     /// Transfers from the ports of its block to its output.
     pub transfers: Vec<TransferReport>,
+    /// The main transfer by its textbook formula; told only where a stage is shown in full.
+    pub worked: Option<String>,
     /// Transfers with the block's other outputs held; `None` in a block of one.
     pub local: Option<Vec<TransferReport>>,
     /// Voltages where the ranges drive the output lowest and highest.
@@ -132,6 +138,8 @@ pub struct TransferReport {
     pub ideal: f64,
     /// With the real op amp; `None` where the device is unknown.
     pub actual: Option<f64>,
+    /// Least and greatest over the travel of adjustable parts, where there are any.
+    pub adjusts: Option<(f64, f64)>,
     /// `actual/ideal - 1`; `None` where there is none.
     pub error: Option<f64>,
 }
@@ -180,6 +188,12 @@ pub struct FigureReport {
     pub reason: Option<String>,
     /// How far the data can be trusted.
     pub data: Rank,
+    /// Unit of the ledger's effects, where they are no figures of this unit.
+    pub ledger_unit: Unit,
+    /// The formula with its values put in; told only where a stage is shown in full.
+    pub worked: Option<String>,
+    /// Random trials, where they were asked for.
+    pub trials: Option<Percentiles>,
     /// What makes it up.
     pub ledger: Vec<LedgerLine>,
 }
@@ -193,6 +207,10 @@ pub struct LedgerLine {
     pub effect: f64,
     /// Its share of the sum of all magnitudes; `None` for the base.
     pub share: Option<f64>,
+    /// Its value: nominal or typical, at the worst corner, and the unit of both.
+    pub value: Option<(f64, f64, Unit)>,
+    /// Where that value comes from; told only where a stage is shown in full.
+    pub origin: Option<String>,
     /// Whether it works against the worst case.
     pub against: bool,
 }

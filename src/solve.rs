@@ -10,17 +10,21 @@ mod board;
 mod dense;
 mod device;
 mod gradient;
+mod load;
 mod model;
 mod network;
 mod parameter;
 mod shorted;
+mod sweep;
 mod system;
 
 pub use board::{Board, Primary, PrimaryKind, Row};
 pub use device::{Device, Range, Supply};
 pub use gradient::Sensitivity;
 pub use model::{Fault, Model};
-pub use network::{AmpStamp, AmpValues, Branch, Excitation, LoadStamp, Network, Node, Short, Values};
+pub use network::{
+    AmpStamp, AmpValues, Branch, Drain, Excitation, Feed, LoadStamp, Network, Node, Short, Values,
+};
 pub use parameter::{Parameter, What, along, point, regenerates, values_at};
 pub use system::{Singular, Solved, State, Weights};
 

@@ -3,9 +3,9 @@
 use crate::block::{Layout, lay_out, name};
 use crate::budget::{self, Budget};
 use crate::check::Options;
-use crate::check::cover;
 use crate::check::files::{self, Includer, Packs};
 use crate::check::stages::{self, Judgement};
+use crate::check::{cover, names};
 use crate::circuit::{self, Circuit, NetId};
 use crate::diagnostic::{Diagnostic, Label, Severity};
 use crate::figure::deviations;
@@ -13,7 +13,7 @@ use crate::netlist;
 use crate::report::{BoardReport, Coverage, Verdict};
 use crate::rule::{Finding, Waived};
 use crate::solve::Board;
-use crate::source::{Sources, matches, nearest};
+use crate::source::{FileId, Sources, matches, quote};
 use std::path::{Path, PathBuf};
 
 /// A board's report, and the files that belong to it and can't be used.
@@ -35,48 +35,62 @@ pub(super) fn check(sources: &mut Sources, packs: &Packs, options: &Options, pat
         stages: Vec::new(),
         findings: Vec::new(),
     };
-    let mut unusable = Vec::new();
-    let (mut budget, faults) = match budget_path(options, path) {
-        None => (Budget::default(), Vec::new()),
-        Some(budget_path) => {
-            let name = budget_path.display().to_string();
-            report.budget = Some(name.clone());
-            match files::load(sources, &budget_path, &name) {
-                Ok(file) => budget::read(sources, file),
-                Err(reason) => {
-                    unusable.push(format!("{name}: {reason}"));
-                    (Budget::default(), Vec::new())
-                }
-            }
+    let mut budget_file = None;
+    let mut budget = Budget::default();
+    if let Some(path) = budget_path(options, path) {
+        let name = path.display().to_string();
+        if let Some(file) = files::open(sources, &path, &name, &mut report.findings) {
+            let (read, faults) = budget::read(sources, file);
+            budget = read;
+            budget_file = Some(file);
+            report.findings.extend(faults.into_iter().map(Finding::from));
         }
-    };
-    if faults.iter().any(|fault| fault.severity == Severity::Error) {
-        unusable.push(format!("{}: it has faults", report.budget.clone().unwrap_or_default()));
+        report.budget = Some(name);
     }
     budget.assumed_technology = options.assume_technology;
     report.name = budget.board.clone();
-    report.findings.extend(faults.into_iter().map(Finding::from));
-    match files::load(sources, path, &shown) {
-        Ok(file) => {
-            let mut includer = Includer::new(path, &shown, file);
-            let (netlist, faults) =
-                netlist::read(sources, file, &mut |sources, name, from| includer.answer(sources, name, from));
-            report.findings.extend(faults.into_iter().map(Finding::from));
-            let (mut circuit, faults) = circuit::build(sources, &netlist, &budget, &packs.catalogue);
-            report.findings.extend(faults.into_iter().map(Finding::from));
-            let layout = lay_out(&mut circuit);
-            analyse(packs, &budget, &circuit, &layout, &mut report);
-        }
-        Err(reason) => {
-            unusable.push(format!("{shown}: {reason}"));
-            let message = format!("{shown} can't be read: {reason}");
-            report.findings.push(plain("unreadable-file", Severity::Error, message));
-        }
+    let mut unknown_trials = Vec::new();
+    if let Some(file) = files::open(sources, path, &shown, &mut report.findings) {
+        let mut includer = Includer::new(path, &shown, file);
+        let (netlist, faults) =
+            netlist::read(sources, file, &mut |sources, name, from| includer.answer(sources, name, from));
+        report.findings.extend(faults.into_iter().map(Finding::from));
+        let (mut circuit, faults) = circuit::build(sources, &netlist, &budget, &packs.catalogue);
+        report.findings.extend(faults.into_iter().map(Finding::from));
+        let untouched = options.with.iter().filter(|(name, value)| !circuit.set_value(name, *value));
+        unknown_trials.extend(untouched.map(|(name, _)| {
+            format!("{shown}: no resistor, capacitor or inductor is named {}", quote(name))
+        }));
+        let layout = lay_out(&mut circuit);
+        let detail = stages::Detail { sources: options.detail.then_some(&*sources), trials: options.trials };
+        analyse(packs, &budget, (&circuit, &layout), detail, &mut report);
     }
+    let mut unusable = unusable(sources, &report, budget_file);
+    unusable.extend(unknown_trials);
     waive(&budget, &mut report.findings);
     report.findings.sort_by_key(|finding| std::cmp::Reverse(finding.severity));
     report.verdict = verdict(&report, options.fail_on.unwrap_or(Severity::Error));
     Checked { report, unusable }
+}
+
+/// Files that belong to the board and can't be read or used, each with its reason.
+fn unusable(sources: &Sources, report: &BoardReport, budget: Option<FileId>) -> Vec<String> {
+    const KINDS: [&str; 4] = ["unreadable-file", "not-a-netlist", "empty-netlist", "include-refused"];
+    let mut said = Vec::new();
+    let faults = report.findings.iter().filter(|finding| finding.stage.is_none());
+    for finding in faults.filter(|finding| finding.severity == Severity::Error) {
+        let Some(label) = finding.labels.first() else { continue };
+        let path = &sources.file(label.span.file).path;
+        let line = match KINDS.contains(&finding.rule.as_str()) {
+            true => format!("{path}: {}", finding.message),
+            false if Some(label.span.file) == budget => format!("{path}: it has faults"),
+            false => continue,
+        };
+        if !said.contains(&line) {
+            said.push(line);
+        }
+    }
+    said
 }
 
 /// The budget of a board: the one named, else `BOARD.budget.yaml` beside it.
@@ -84,13 +98,19 @@ fn budget_path(options: &Options, path: &Path) -> Option<PathBuf> {
     options.budget.clone().or_else(|| Some(path.with_extension("budget.yaml")).filter(|path| path.is_file()))
 }
 
-fn analyse(packs: &Packs, budget: &Budget, circuit: &Circuit, layout: &Layout, report: &mut BoardReport) {
-    report.findings.extend(misnamed(budget, circuit));
+fn analyse(
+    packs: &Packs,
+    budget: &Budget,
+    (circuit, layout): (&Circuit, &Layout),
+    detail: stages::Detail,
+    report: &mut BoardReport,
+) {
     let supplies = supplies(budget, circuit);
     let board = Board::new(circuit, layout, &packs.catalogue, supplies);
-    let names = name(circuit, layout, &|net| board.level(net));
+    let named = name(circuit, layout, &|net| board.level(net));
     let moved = deviations(&board);
-    let judged = stages::judge_all(&board, budget, &packs.rules, &names, &moved);
+    let judged = stages::judge_all(&board, budget, &packs.rules, &named, &moved, detail);
+    report.findings.extend(names::misnamed(budget, circuit, &judged));
     cover::count(&board, report);
     report.assumed = stages::assumed(&board, budget);
     report.findings.extend(stages::unjudged(&board, &judged));
@@ -120,35 +140,6 @@ fn supplies(budget: &Budget, circuit: &Circuit) -> Vec<(Option<NetId>, Option<Ne
         }
     };
     circuit.op_amps.iter().map(of).collect()
-}
-
-/// Names in the budget's stages, waivers and supplies that the netlist lacks.
-fn misnamed(budget: &Budget, circuit: &Circuit) -> Vec<Finding> {
-    let mut found = Vec::new();
-    let patterns = budget.stages.iter().flat_map(|stage| &stage.matches);
-    for pattern in patterns.chain(budget.waivers.iter().flat_map(|waiver| &waiver.matches)) {
-        let names = || circuit.op_amps.iter().map(|op_amp| op_amp.name.as_str());
-        let elements = || circuit.elements.iter().map(|element| element.name.as_str());
-        if !names().chain(elements()).any(|name| matches(&pattern.text, name)) {
-            found.push((pattern, "stage", nearest(&pattern.text, names()).map(str::to_owned)));
-        }
-    }
-    let supplies = budget.stages.iter().filter_map(|stage| stage.supply.as_ref());
-    for net in supplies.flat_map(|(positive, negative)| [positive, negative]) {
-        let nets = || circuit.nets.iter().map(|net| net.name.as_str());
-        if net.text != "0" && !nets().any(|name| name.eq_ignore_ascii_case(&net.text)) {
-            found.push((net, "net", nearest(&net.text, nets()).map(str::to_owned)));
-        }
-    }
-    let finding = |(name, what, near): (&budget::Name, &str, Option<String>)| {
-        let message = format!("the netlist has no {what} named `{}`", name.text);
-        let fault = Diagnostic::at("unknown-name", Severity::Error, name.span, message);
-        Finding::from(match near {
-            Some(near) => fault.help(format!("the nearest name is `{near}`")),
-            None => fault,
-        })
-    };
-    found.into_iter().map(finding).collect()
 }
 
 /// Networks that nothing drives although several nets could be the signal.

@@ -12,6 +12,7 @@ use std::collections::BTreeMap;
 /// An op amp without figures: what to say of it.
 struct Case {
     element: ElementId,
+    name: String,
     rule: &'static str,
     severity: Severity,
     reason: String,
@@ -30,6 +31,7 @@ pub(super) fn count(board: &Board, report: &mut BoardReport) {
     let mut cases: Vec<Case> = Vec::new();
     let unplaced = circuit.unplaced.iter().map(|unplaced| Case {
         element: unplaced.element,
+        name: circuit.element(unplaced.element).name.clone(),
         rule: "pin-map",
         severity: Severity::Error,
         reason: unplaced.reason.clone(),
@@ -39,7 +41,7 @@ pub(super) fn count(board: &Board, report: &mut BoardReport) {
     });
     cases.extend(unplaced);
     let blocked = board.layout.skipped.iter();
-    cases.extend(blocked.map(|(at, why)| misplaced(board, circuit.op_amps[*at as usize].element, *why)));
+    cases.extend(blocked.map(|(at, why)| misplaced(board, *at, *why)));
     for (at, amp) in board.layout.amps.iter().enumerate() {
         let Some(op_amp) = amp.op_amp else { continue };
         match &board.models[board.place[at].0].fault {
@@ -48,9 +50,9 @@ pub(super) fn count(board: &Board, report: &mut BoardReport) {
         }
     }
     cases.sort_by_key(|case| case.element);
-    let mut devices: BTreeMap<String, Vec<ElementId>> = BTreeMap::new();
+    let mut devices: BTreeMap<String, Vec<(String, ElementId)>> = BTreeMap::new();
     for (model, case) in cases.iter().filter_map(|case| Some((case.device.as_ref()?, case))) {
-        devices.entry(model.to_ascii_lowercase()).or_default().push(case.element);
+        devices.entry(model.to_ascii_lowercase()).or_default().push((case.name.clone(), case.element));
     }
     for case in cases {
         report.findings.extend(match &case.device {
@@ -60,9 +62,8 @@ pub(super) fn count(board: &Board, report: &mut BoardReport) {
             }
             None => Some(finding(circuit, &case)),
         });
-        let name = circuit.element(case.element).name.clone();
         match case.skipped {
-            true => coverage.skipped.push((name, case.reason)),
+            true => coverage.skipped.push((case.name, case.reason)),
             false => coverage.non_linear += 1,
         }
     }
@@ -70,19 +71,19 @@ pub(super) fn count(board: &Board, report: &mut BoardReport) {
 }
 
 fn finding(circuit: &Circuit, case: &Case) -> Finding {
-    let element = circuit.element(case.element);
+    let span = circuit.element(case.element).span;
     let message = match case.skipped {
-        true => format!("{} is not analysed: {}", element.name, case.reason),
-        false => format!("{} has no linear figures: {}", element.name, case.reason),
+        true => format!("{} is not analysed: {}", case.name, case.reason),
+        false => format!("{} has no linear figures: {}", case.name, case.reason),
     };
     let fault = Diagnostic {
         kind: case.rule,
         severity: case.severity,
         message,
-        labels: element.span.map(|span| Label { span, text: String::new() }).into_iter().collect(),
+        labels: span.map(|span| Label { span, text: String::new() }).into_iter().collect(),
         help: case.cure.clone(),
     };
-    Finding { stage: Some(element.name.clone()), ..Finding::from(fault) }
+    Finding { stage: Some(case.name.clone()), ..Finding::from(fault) }
 }
 
 /// Figures that decide most of what is judged.
@@ -90,10 +91,10 @@ const DECISIVE: &str = "open-loop-gain, bias-current, offset-voltage, common-mod
     swing-below-positive, swing-above-negative, input-below-positive, input-above-negative, output-current";
 
 /// A device that no profile knows, with the stages that it leaves without figures.
-fn unknown_device(circuit: &Circuit, model: &str, stages: &[ElementId]) -> Finding {
+fn unknown_device(circuit: &Circuit, model: &str, stages: &[(String, ElementId)]) -> Finding {
     const SHOWN: usize = 4;
-    let elements = || stages.iter().take(SHOWN).map(|at| circuit.element(*at));
-    let names: Vec<&str> = elements().map(|element| element.name.as_str()).collect();
+    let shown = &stages[..stages.len().min(SHOWN)];
+    let names: Vec<&str> = shown.iter().map(|(name, _)| name.as_str()).collect();
     let more = stages.len() - names.len();
     let more = if 0 < more { format!(" and {more} more") } else { String::new() };
     let key = yaml_key(model);
@@ -104,8 +105,9 @@ fn unknown_device(circuit: &Circuit, model: &str, stages: &[ElementId]) -> Findi
             "{model} is an unknown device: of {}{more} nothing but structure and ideal transfers can be told",
             names.join(", ")
         ),
-        labels: elements()
-            .filter_map(|element| element.span)
+        labels: shown
+            .iter()
+            .filter_map(|(_, element)| circuit.element(*element).span)
             .map(|span| Label { span, text: String::new() })
             .collect(),
         help: Some(format!(
@@ -124,18 +126,20 @@ fn yaml_key(name: &str) -> String {
 }
 
 /// An op amp whose output is no place for one.
-fn misplaced(board: &Board, element: ElementId, why: Unplaceable) -> Case {
-    let name = |net: NetId| &board.circuit.net(net).name;
+fn misplaced(board: &Board, op_amp: u32, why: Unplaceable) -> Case {
+    let part = &board.circuit.op_amps[op_amp as usize];
+    let net = |net: NetId| &board.circuit.net(net).name;
     let (rule, reason) = match why {
         Unplaceable::Grounded => ("shorted-output", "its output is tied to ground".to_owned()),
-        Unplaceable::Tied(net) => {
-            ("shorted-output", format!("its output is tied to the source or rail on {}", name(net)))
+        Unplaceable::Tied(at) => {
+            ("shorted-output", format!("its output is tied to the source or rail on {}", net(at)))
         }
-        Unplaceable::Joined(net, outputs) => {
-            ("joined-outputs", format!("{outputs} outputs are joined on {}", name(net)))
+        Unplaceable::Joined(at, outputs) => {
+            ("joined-outputs", format!("{outputs} outputs are joined on {}", net(at)))
         }
     };
-    Case { element, rule, severity: Severity::Error, reason, cure: None, device: None, skipped: true }
+    let (element, name) = (part.element, part.name.clone());
+    Case { element, name, rule, severity: Severity::Error, reason, cure: None, device: None, skipped: true }
 }
 
 /// An op amp whose block has no figures.
@@ -158,7 +162,8 @@ fn unsolved(board: &Board, amp: AmpId, op_amp: u32, fault: &Fault) -> Case {
         _ => None,
     };
     let reason = explain(board.circuit, board.layout, fault);
-    Case { element: part.element, rule, severity, reason, cure: None, device, skipped }
+    let (element, name) = (part.element, part.name.clone());
+    Case { element, name, rule, severity, reason, cure: None, device, skipped }
 }
 
 /// Whether an output reaches the inputs of other amplifiers.

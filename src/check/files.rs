@@ -6,8 +6,8 @@ use crate::diagnostic::{Diagnostic, Severity};
 use crate::figure::Kind;
 use crate::netlist::Include;
 use crate::quantity::Unit;
-use crate::rule::{Rule, read_pack};
-use crate::source::{FileId, Sources, decode};
+use crate::rule::{Finding, Rule, read_pack};
+use crate::source::{FileId, Sources, Span, decode};
 use std::collections::BTreeMap;
 use std::io::Read;
 use std::path::{Path, PathBuf};
@@ -25,6 +25,24 @@ const ENDINGS: [&str; 8] = ["cir", "net", "sp", "spi", "spice", "ckt", "cki", "n
 pub(super) fn load(sources: &mut Sources, path: &Path, shown: &str) -> Result<FileId, String> {
     let text = read_text(path)?;
     Ok(sources.add(shown, text))
+}
+
+/// The same; a file that can't be read is a finding, at the beginning of an empty text of its name.
+pub(super) fn open(
+    sources: &mut Sources,
+    path: &Path,
+    shown: &str,
+    findings: &mut Vec<Finding>,
+) -> Option<FileId> {
+    load(sources, path, shown)
+        .map_err(|reason| findings.push(unreadable(sources, shown, &reason).into()))
+        .ok()
+}
+
+fn unreadable(sources: &mut Sources, shown: &str, reason: &str) -> Diagnostic {
+    let file = sources.add(shown, String::new());
+    let message = format!("expected a text that can be read: {reason}");
+    Diagnostic::at("unreadable-file", Severity::Error, Span { file, start: 0, end: 0 }, message)
 }
 
 fn read_text(path: &Path) -> Result<String, String> {
@@ -130,7 +148,7 @@ impl Includer {
                 self.folders.insert(file, (folder, shown.unwrap_or_default()));
                 Include::Found(file)
             }
-            Err(reason) => Include::Missing(reason),
+            Err(reason) => Include::Refused(reason),
         }
     }
 }
@@ -177,16 +195,19 @@ pub(super) fn packs(sources: &mut Sources, devices: &[PathBuf], rules: &[PathBuf
         let file = sources.add(*name, (*text).to_owned());
         packs.pack(sources, file);
     }
+    for path in devices.iter().filter(|path| path.is_dir() && yaml_files(path).is_empty()) {
+        packs.lacking(sources, path, "no YAML file in it");
+    }
     for path in devices.iter().flat_map(|path| yaml_files(path)) {
         match load(sources, &path, &path.display().to_string()) {
             Ok(file) => packs.profiles(sources, file),
-            Err(reason) => packs.unusable.push(format!("{}: {reason}", path.display())),
+            Err(reason) => packs.lacking(sources, &path, &reason),
         }
     }
     for path in rules {
         match load(sources, path, &path.display().to_string()) {
             Ok(file) => packs.pack(sources, file),
-            Err(reason) => packs.unusable.push(format!("{}: {reason}", path.display())),
+            Err(reason) => packs.lacking(sources, path, &reason),
         }
     }
     packs
@@ -208,6 +229,12 @@ impl Packs {
         let (rules, faults) = read_pack(sources, file, &known);
         self.rules.extend(rules);
         self.take(sources, file, faults);
+    }
+
+    fn lacking(&mut self, sources: &mut Sources, path: &Path, reason: &str) {
+        let shown = path.display().to_string();
+        self.faults.push(unreadable(sources, &shown, reason));
+        self.unusable.push(format!("{shown}: {reason}"));
     }
 
     fn take(&mut self, sources: &Sources, file: FileId, faults: Vec<Diagnostic>) {

@@ -4,12 +4,12 @@ use crate::block::{AmpId, Topology};
 use crate::budget::{Budget, Gain, StageBudget};
 use crate::device::Rank;
 use crate::diagnostic::{Diagnostic, Label, Severity};
-use crate::figure::{Figure, LegsFrom, Main, PinVoltages, Requirement, Review, Stage, Transfer};
+use crate::figure::{Bad, Figure, Kind, LegsFrom, Main, PinVoltages, Requirement, Review, Stage, Transfer};
 use crate::quantity::{Unit, percent};
 use crate::report::{FigureReport, LedgerLine, PinReport, ReachReport, StageReport, TransferReport};
 use crate::rule::{Finding, Judged, Rule, Status, Subject, judge};
 use crate::solve::{Board, PrimaryKind};
-use crate::source::matches;
+use crate::source::{Sources, matches};
 use rayon::prelude::*;
 use std::collections::BTreeSet;
 
@@ -20,6 +20,15 @@ pub(super) struct Judgement {
     op_amp: u32,
 }
 
+/// How much is told of each stage.
+#[derive(Debug, Clone, Copy, Default)]
+pub(super) struct Detail<'s> {
+    /// Texts to name origins by, where every value's origin and formula is asked for.
+    pub(super) sources: Option<&'s Sources>,
+    /// Random trials of each figure.
+    pub(super) trials: u32,
+}
+
 /// Reviews and judges every stage, blocks in parallel, in netlist order.
 pub(super) fn judge_all(
     board: &Board,
@@ -27,14 +36,16 @@ pub(super) fn judge_all(
     rules: &[Rule],
     names: &[(Topology, Option<u32>)],
     deviations: &[(f64, Rank)],
+    detail: Detail,
 ) -> Vec<Judgement> {
     let groups = groups(board, names);
     (0..board.layout.amps.len())
         .into_par_iter()
         .filter_map(|at| {
-            let stage = Stage::of(board, deviations, AmpId(at as u32))?;
+            let mut stage = Stage::of(board, deviations, AmpId(at as u32))?;
+            stage.trials = detail.trials;
             let group = names[at].1.map(|group| groups[group as usize].clone());
-            Some(one(&stage, budget, rules, names[at].0, group))
+            Some(one(&stage, budget, rules, (names[at].0, group), detail))
         })
         .collect()
 }
@@ -55,8 +66,8 @@ fn one(
     stage: &Stage,
     budget: &Budget,
     rules: &[Rule],
-    topology: Topology,
-    group: Option<String>,
+    (topology, group): (Topology, Option<String>),
+    detail: Detail,
 ) -> Judgement {
     let part = stage.part();
     let asked: Vec<&StageBudget> = budget
@@ -100,7 +111,7 @@ fn one(
         if figure.kind.doc().slug != "loop-gain" || !speaks("gain-error") {
             findings.extend(judged.finding.take());
         }
-        figures.push(figure_report(stage, figure, judged));
+        figures.push(figure_report(stage, &review, figure, judged, detail.sources));
     }
     let report = StageReport {
         id: part.name.clone(),
@@ -109,6 +120,7 @@ fn one(
         group,
         output: stage.board.circuit.net(part.output).name.clone(),
         transfers: transfers(&review.transfers, review.main),
+        worked: detail.sources.and_then(|_| stage.worked_transfer(&review, topology)),
         local: stage.local().map(|local| transfers(&local, None)),
         pins: review.pins.iter().map(pin).collect(),
         reach: Some(reach(&review)),
@@ -137,6 +149,7 @@ fn transfers(found: &[Transfer], main: Option<usize>) -> Vec<TransferReport> {
         input: transfer.input.name.clone(),
         unit: if matches!(transfer.input.from, Main::Current(_)) { "ohm" } else { "V/V" },
         frequency: 0.0,
+        adjusts: transfer.adjusts,
         ideal: transfer.ideal,
         actual: transfer.actual,
         error: transfer.actual.filter(|_| transfer.ideal != 0.0).map(|actual| actual / transfer.ideal - 1.0),
@@ -167,16 +180,27 @@ fn pin(pins: &PinVoltages) -> PinReport {
     }
 }
 
-fn figure_report(stage: &Stage, figure: &Figure, judged: Judged) -> FigureReport {
+fn figure_report(
+    stage: &Stage,
+    review: &Review,
+    figure: &Figure,
+    judged: Judged,
+    sources: Option<&Sources>,
+) -> FigureReport {
     let doc = figure.kind.doc();
     let shares = figure.shares();
-    let direction = figure.worst.zip(figure.nominal).map_or(1.0, |(worst, nominal)| {
-        if doc.bad == crate::figure::Bad::Either { worst } else { worst - nominal }
-    });
+    let direction = match doc.bad {
+        Bad::Either => figure.worst.unwrap_or(1.0),
+        Bad::High => 1.0,
+        Bad::Low if figure.kind == Kind::Rejection => 1.0,
+        Bad::Low => -1.0,
+    };
     let lines = figure.ledger.iter().zip(shares).map(|(line, share)| LedgerLine {
         item: line.item.label(stage.board.circuit),
         effect: line.effect,
         share,
+        value: line.value,
+        origin: sources.and_then(|sources| stage.origin(line, sources)),
         against: share.is_some() && line.effect * direction < 0.0,
     });
     FigureReport {
@@ -192,6 +216,9 @@ fn figure_report(stage: &Stage, figure: &Figure, judged: Judged) -> FigureReport
         status: judged.status,
         reason: judged.reason,
         data: judged.data,
+        ledger_unit: if figure.kind == Kind::Rejection { Unit::One } else { doc.unit },
+        worked: sources.and_then(|_| stage.worked(review, figure)),
+        trials: figure.trials,
         ledger: lines.collect(),
     }
 }

@@ -254,5 +254,12 @@ fn unknown(name: &Name, what: &str, nearest: Option<&str>) -> Diagnostic {
 
 /// A declared value: no tolerance unless one is declared with it.
 fn exact(value: f64) -> Part {
-    Part { value: Some(value), tolerance: 0.0, rank: Rank::Guaranteed, rating: None, group: None }
+    Part {
+        value: Some(value),
+        tolerance: 0.0,
+        rank: Rank::Guaranteed,
+        rating: None,
+        travel: None,
+        group: None,
+    }
 }

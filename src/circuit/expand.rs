@@ -263,8 +263,19 @@ impl<'a> Expander<'a> {
         level: &Level,
     ) {
         let whole = self.part(&name, Passive::Resistor, stated, level);
-        let half = crate::circuit::Part { value: whole.value.map(|ohms| ohms / 2.0), ..whole };
-        for (ends, part) in [([nets[0], nets[1]], "upper"), ([nets[1], nets[2]], "lower")] {
+        let stated = stated.value.and_then(|value| self.value(value, level));
+        let upper = match (whole.travel, stated) {
+            (Some(_), _) => whole,
+            _ => crate::circuit::Part { value: whole.value.map(|ohms| ohms / 2.0), ..whole },
+        };
+        let rest = |ohms: f64| stated.map_or(ohms, |track| track - ohms);
+        let lower = crate::circuit::Part {
+            value: upper.value.map(rest),
+            travel: upper.travel.map(|(first, second)| (rest(first), rest(second))),
+            ..upper
+        };
+        let halves = [([nets[0], nets[1]], "upper", upper), ([nets[1], nets[2]], "lower", lower)];
+        for (ends, part, half) in halves {
             self.add_element(Element {
                 name: format!("{name}:{part}"),
                 nets: ends.as_slice().into(),
@@ -276,8 +287,12 @@ impl<'a> Expander<'a> {
 
     /// A passive's value, tolerance and rating; the reader has put in what a model of it says.
     fn part(&mut self, name: &str, passive: Passive, stated: &Stated, level: &Level) -> crate::circuit::Part {
-        let value = stated.value.and_then(|value| self.value(value, level)).filter(|value| value.is_finite());
-        let sound = value.filter(|value| passive == Passive::Resistor || 0.0 < *value);
+        let value = stated.value.and_then(|value| {
+            let read = level.parameters.value(self.sources, value);
+            let fault = |(span, reason)| Diagnostic::at("unreadable-value", Severity::Error, span, reason);
+            read.map_err(|reason| self.faults.push(fault(reason))).ok()
+        });
+        let sound = value.filter(|value| value.is_finite() && (passive == Passive::Resistor || 0.0 < *value));
         let limits = (stated.tolerance, stated.rating);
         values::part(self.budget, &self.catalogue.assumed, name, passive, sound, limits)
     }

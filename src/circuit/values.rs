@@ -40,8 +40,21 @@ pub(super) fn part(
     let drift = exceptions().find_map(|(_, part)| part.drift).or(budget.tolerance.resistor_drift);
     let heat = budget.temperature.map_or(0.0, |(low, high)| (25.0 - low.0).abs().max((high.0 - 25.0).abs()));
     let warm = if passive == Passive::Resistor { drift.unwrap_or(0.0) * heat } else { 0.0 };
+    if let Some((from, to)) = exceptions().find_map(|(_, part)| part.travel) {
+        // An adjusted part has no tolerance: it is set, somewhere on its travel.
+        let whole = value.unwrap_or(f64::NAN);
+        return Part {
+            value: value.map(|ohms| ohms * (from + to) / 2.0),
+            tolerance: 0.0,
+            rank: Rank::Guaranteed,
+            rating: exceptions().find_map(|(_, part)| part.power).or(rating),
+            travel: Some((whole * from, whole * to)).filter(|_| value.is_some()),
+            group: None,
+        };
+    }
     Part {
         value,
+        travel: None,
         tolerance: declared.unwrap_or(default.1) + warm,
         rank: if declared.is_some() { Rank::Guaranteed } else { Rank::Assumed },
         rating: exceptions().find_map(|(_, part)| part.power).or(rating),

@@ -84,9 +84,9 @@ pub fn spread<'p>(
     key: Key,
     situation: Situation,
 ) -> Option<Spread<'p>> {
-    let low = pick(profile, |entry| entry.min, key, situation);
-    let high = pick(profile, |entry| entry.max, key, situation);
-    let typical = pick(profile, |entry| entry.typ, key, situation);
+    let low = pick(profile, |entry| entry.min, true, key, situation);
+    let high = pick(profile, |entry| entry.max, true, key, situation);
+    let typical = pick(profile, |entry| entry.typ, false, key, situation);
     let limit = match harm(key) {
         Harm::Low => low.as_ref(),
         Harm::High => high.as_ref(),
@@ -149,15 +149,16 @@ struct Found<'p> {
 fn pick<'p>(
     profile: &'p Profile,
     field: impl Fn(&Entry) -> Option<f64>,
+    limit: bool,
     key: Key,
     situation: Situation,
 ) -> Option<Found<'p>> {
     let candidates = profile.entries(key).iter().filter_map(|entry| Some((entry, field(entry)?)));
     let worse = |value: f64| if harm(key) == Harm::Low { value } else { -value };
     let (entry, value) = candidates.min_by(|(a, x), (b, y)| {
-        fit(a, key, situation)
+        fit(a, limit, key, situation)
             .iter()
-            .zip(fit(b, key, situation))
+            .zip(fit(b, limit, key, situation))
             .map(|(a, b)| a.total_cmp(&b))
             .find(|order| order.is_ne())
             .unwrap_or_else(|| worse(*x).total_cmp(&worse(*y)))
@@ -175,7 +176,7 @@ fn pick<'p>(
 }
 
 /// How badly an entry fits, most weighty first; nought is a fit.
-fn fit(entry: &Entry, key: Key, situation: Situation) -> [f64; 5] {
+fn fit(entry: &Entry, limit: bool, key: Key, situation: Situation) -> [f64; 5] {
     let (lighter, distance) = match entry_current(entry, key, situation) {
         None => (0.0, 0.0),
         Some(current) if situation.current <= current => (0.0, current - situation.current.max(0.0)),
@@ -183,7 +184,13 @@ fn fit(entry: &Entry, key: Key, situation: Situation) -> [f64; 5] {
     };
     let supply = entry.at.supply.zip(situation.supply).map_or(0.0, |(at, own)| (at.0 - own).abs());
     let width = entry.at.temperature.map_or(0.0, |(low, high)| high.0 - low.0);
-    [misses_temperature(entry, situation), lighter, distance, supply, width]
+    let temperature = misses_temperature(entry, situation);
+    if limit {
+        [temperature, lighter, distance, supply, width]
+    } else {
+        // Typical values are printed for one temperature; what the load is weighs more.
+        [lighter, distance, supply, temperature, width]
+    }
 }
 
 fn misses_temperature(entry: &Entry, situation: Situation) -> f64 {

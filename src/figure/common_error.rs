@@ -31,7 +31,7 @@ pub(super) fn compute(stage: &Stage, legs: Option<Legs>) -> Figure {
     let axes = quantity.axes();
     match study(&quantity, &axes, Bad::Either) {
         Some(found) => {
-            let figure = stage.figure_of(kind, &axes, &found, &[], true);
+            let figure = stage.figure_of(kind, &quantity, &axes, &found, &[], true);
             let turn = if found.worst < 0.0 { -1.0 } else { 1.0 };
             let ledger =
                 figure.ledger.iter().map(|line| crate::figure::Line { effect: turn * line.effect, ..*line });

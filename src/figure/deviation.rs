@@ -31,7 +31,7 @@ fn deviation(board: &Board, known: &[(f64, Rank)], amp: AmpId) -> (f64, Rank) {
     let (block, member) = board.place[amp.0 as usize];
     // A controlled source has no device; any op amp's index serves where none of its own data is read.
     let op_amp = board.layout.amp(amp).op_amp.unwrap_or(0);
-    let stage = Stage { board, block, member, op_amp, deviations: known };
+    let stage = Stage { board, block, member, op_amp, deviations: known, trials: 0 };
     let drive = Drive::of(&stage);
     let mut incomplete = false;
     let mut extras = stage.bias_currents().unwrap_or_else(|_| {

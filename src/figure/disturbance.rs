@@ -3,10 +3,10 @@
 use crate::block::Role;
 use crate::circuit::NetId;
 use crate::device::{Key, Rank, Technology};
-use crate::figure::Item;
 use crate::figure::linear::Effect;
 use crate::figure::stage::Stage;
 use crate::figure::study::Axis;
+use crate::figure::{Item, Quality};
 use crate::solve::{Excitation, Solved};
 use smallvec::smallvec;
 
@@ -15,15 +15,14 @@ use smallvec::smallvec;
 pub(super) struct Extra {
     pub effect: Effect,
     pub axis: Axis,
-    pub typical: f64,
     pub item: Item,
 }
 
 impl Extra {
     /// A value of either sign: `most` at the worst, `typical` usually.
     pub(super) fn symmetric(effect: Effect, item: Item, typical: f64, most: f64, rank: Rank) -> Extra {
-        let axis = Axis { base: 0.0, nominal: 0.0, low: -most, high: most, rank };
-        Extra { effect, axis, typical, item }
+        let axis = Axis { base: 0.0, nominal: 0.0, typical, low: -most, high: most, rank };
+        Extra { effect, axis, item }
     }
 }
 
@@ -52,14 +51,14 @@ impl Stage<'_> {
             };
             match stage.input_current(Key::OffsetCurrent) {
                 Some(offset) => {
-                    let item = Item::OpAmp(op_amp, "bias current");
+                    let item = Item::OpAmp(op_amp, Quality::BiasCurrent);
                     extras.push(Extra::symmetric(into(1.0, 1.0), item, bias.0, bias.1, bias.2));
-                    let item = Item::OpAmp(op_amp, "offset current");
+                    let item = Item::OpAmp(op_amp, Quality::OffsetCurrent);
                     extras.push(Extra::symmetric(into(0.5, -0.5), item, offset.0, offset.1, offset.2));
                 }
                 None => {
-                    let plus = Item::OpAmp(op_amp, "bias current of in+");
-                    let minus = Item::OpAmp(op_amp, "bias current of in-");
+                    let plus = Item::OpAmp(op_amp, Quality::BiasPlus);
+                    let minus = Item::OpAmp(op_amp, Quality::BiasMinus);
                     extras.push(Extra::symmetric(into(1.0, 0.0), plus, bias.0, bias.1, bias.2));
                     extras.push(Extra::symmetric(into(0.0, 1.0), minus, bias.0, bias.1, bias.2));
                 }
@@ -76,7 +75,7 @@ impl Stage<'_> {
         let field_effect = matches!(self.part().technology, Some(Technology::Jfet | Technology::Cmos));
         let growth = if field_effect { (above / DOUBLING).exp2() } else { 1.0 };
         let most = if found.covered { found.high } else { found.high * growth };
-        Some((found.nominal * growth, most.max(found.nominal * growth), found.rank))
+        Some(((found.nominal * growth).min(most), most, found.rank))
     }
 
     pub(super) fn missing(&self, key: Key) -> String {
@@ -108,7 +107,13 @@ impl Stage<'_> {
         let item = |what| Item::OpAmp(self.op_amp, what);
         let offset = self.spread(Key::OffsetVoltage, 0.0).ok_or_else(|| self.missing(Key::OffsetVoltage))?;
         let most = offset.high.abs();
-        extras.push(Extra::symmetric(series(1.0), item("offset voltage"), offset.nominal, most, offset.rank));
+        extras.push(Extra::symmetric(
+            series(1.0),
+            item(Quality::OffsetVoltage),
+            offset.nominal,
+            most,
+            offset.rank,
+        ));
         let (low, high) = self.board.circuit.temperature;
         let away = (25.0 - low).max(high - 25.0).max(0.0);
         if 0.0 < away && !offset.covered {
@@ -116,7 +121,7 @@ impl Stage<'_> {
             let effect = series(away);
             extras.push(Extra::symmetric(
                 effect,
-                item("offset drift"),
+                item(Quality::OffsetDrift),
                 drift.nominal,
                 drift.high,
                 drift.rank,
@@ -133,7 +138,7 @@ impl Stage<'_> {
             let (usual, least) = (from_decibel(rejection.nominal), from_decibel(rejection.low));
             extras.push(Extra::symmetric(
                 series(away),
-                item("common-mode rejection"),
+                item(Quality::CommonModeRejection),
                 1.0 / usual,
                 1.0 / least,
                 rank,
@@ -147,7 +152,7 @@ impl Stage<'_> {
             let (usual, least) = (from_decibel(rejection.nominal), from_decibel(rejection.low));
             extras.push(Extra::symmetric(
                 series(deviation),
-                item("supply rejection"),
+                item(Quality::SupplyRejection),
                 1.0 / usual,
                 1.0 / least,
                 rank,

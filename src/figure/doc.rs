@@ -33,37 +33,37 @@ pub struct Doc {
 /// A figure.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
 pub enum Kind {
-    /// See [`gain_error::DOC`].
+    /// See `DOC` in `figure/gain_error.rs`.
     GainError,
-    /// See [`loop_gain::DOC`].
+    /// See `DOC` in `figure/loop_gain.rs`.
     LoopGain,
-    /// See [`feedback_resistance::DOC`].
+    /// See `DOC` in `figure/feedback_resistance.rs`.
     FeedbackResistance,
-    /// See [`feedback_loading::DOC`].
+    /// See `DOC` in `figure/feedback_loading.rs`.
     FeedbackLoading,
-    /// See [`output_current::DOC`].
+    /// See `DOC` in `figure/output_current.rs`.
     OutputCurrent,
-    /// See [`bias_error::DOC`].
+    /// See `DOC` in `figure/bias_error.rs`.
     BiasError,
-    /// See [`offset_error::DOC`].
+    /// See `DOC` in `figure/offset_error.rs`.
     OffsetError,
-    /// See [`output_headroom::DOC`].
+    /// See `DOC` in `figure/output_headroom.rs`.
     OutputHeadroom,
-    /// See [`input_headroom::DOC`].
+    /// See `DOC` in `figure/input_headroom.rs`.
     InputHeadroom,
-    /// See [`input_resistance::DOC`].
+    /// See `DOC` in `figure/input_resistance.rs`.
     InputResistance,
-    /// See [`source_loading::DOC`].
+    /// See `DOC` in `figure/source_loading.rs`.
     SourceLoading,
-    /// See [`output_resistance::DOC`].
+    /// See `DOC` in `figure/output_resistance.rs`.
     OutputResistance,
-    /// See [`gain_spread::DOC`].
+    /// See `DOC` in `figure/gain_spread.rs`.
     GainSpread,
-    /// See [`rejection::DOC`].
+    /// See `DOC` in `figure/rejection.rs`.
     Rejection,
-    /// See [`common_error::DOC`].
+    /// See `DOC` in `figure/common_error.rs`.
     CommonError,
-    /// See [`resistor_power::DOC`].
+    /// See `DOC` in `figure/resistor_power.rs`.
     ResistorPower,
 }
 

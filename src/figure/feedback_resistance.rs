@@ -53,7 +53,7 @@ pub(super) fn compute(stage: &Stage, from: Option<Main>) -> Figure {
         );
     }
     match study(&ratio, &axes, Bad::Low) {
-        Some(found) => stage.figure_of(kind, &axes, &found, &[], false),
+        Some(found) => stage.figure_of(kind, &ratio, &axes, &found, &[], false),
         None => Figure::unknown(kind, "its equations have no solution at the worst corner"),
     }
 }

@@ -4,7 +4,7 @@ use crate::figure::linear::axes;
 use crate::figure::stage::{Main, Stage};
 use crate::figure::study::{Quantity, study};
 use crate::figure::{Bad, Doc, Figure, Kind};
-use crate::quantity::Unit;
+use crate::quantity::{Unit, show};
 use crate::solve::{Solved, along, values_at};
 
 /// What the figure is.
@@ -61,10 +61,26 @@ impl Quantity for GainError<'_> {
 
 pub(super) fn compute(stage: &Stage, from: Option<Main>, intended: Option<f64>) -> Figure {
     let Some(from) = from else { return Figure::absent(Kind::GainError, "no signal port") };
+    if let (Some(gain), Some((low, high))) = (intended, stage.adjusts(from)) {
+        let range = format!("adjusts {} to {}", show(low, Unit::One), show(high, Unit::One));
+        if (low..=high).contains(&gain) {
+            return Figure::absent(
+                Kind::GainError,
+                format!("{range}, the intended {} inside", show(gain, Unit::One)),
+            );
+        }
+        let nearest = if gain < low { low } else { high };
+        return Figure {
+            nominal: Some(nearest / gain - 1.0),
+            worst: Some(nearest / gain - 1.0),
+            reason: Some(format!("{range}, the intended {} outside", show(gain, Unit::One))),
+            ..Figure::unknown(Kind::GainError, "")
+        };
+    }
     let quantity = GainError { stage: *stage, from, intended };
     let axes = axes(stage.model(), true);
     match study(&quantity, &axes, Bad::Either) {
-        Some(found) => stage.figure_of(Kind::GainError, &axes, &found, &[], true),
+        Some(found) => stage.figure_of(Kind::GainError, &quantity, &axes, &found, &[], true),
         None => Figure::unknown(Kind::GainError, "its equations have no solution at the worst corner"),
     }
 }

@@ -53,9 +53,10 @@ pub(super) fn compute(stage: &Stage, from: Option<Main>) -> Figure {
     let unknown = || Figure::unknown(Kind::GainSpread, "its equations have no solution at the worst corner");
     let Ok(solved) = Solved::new(&model.network, model.nominal.clone()) else { return unknown() };
     let nominal = stage.transfer(&solved, &solved.adjoint(&[(stage.output(), 1.0)]), from);
-    match study(&Spread { stage: *stage, from, nominal }, &axes, Bad::Either) {
+    let quantity = Spread { stage: *stage, from, nominal };
+    match study(&quantity, &axes, Bad::Either) {
         Some(found) => {
-            Figure { nominal: None, ..stage.figure_of(Kind::GainSpread, &axes, &found, &[], true) }
+            Figure { nominal: None, ..stage.figure_of(Kind::GainSpread, &quantity, &axes, &found, &[], true) }
         }
         None => unknown(),
     }

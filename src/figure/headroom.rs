@@ -5,8 +5,8 @@ use crate::device::{Key, Rank};
 use crate::figure::disturbance::Extra;
 use crate::figure::linear::{Linear, Reading, axes};
 use crate::figure::stage::Stage;
-use crate::figure::study::{Axis, Quantity, study};
-use crate::figure::{Bad, Figure, Item, Kind};
+use crate::figure::study::{Axis, Quantity, Study, study};
+use crate::figure::{Bad, Figure, Item, Kind, Quality};
 use crate::solve::{Excitation, Node};
 use smallvec::smallvec;
 
@@ -43,14 +43,15 @@ impl<'b> Stage<'b> {
         let Some(found) = study(&linear, &axes, Bad::High) else {
             return Figure::unknown(kind, "its equations have no solution at the worst corner");
         };
+        let found = both_ways(&linear, &axes, found);
         // The nominal is the sum of typical magnitudes in the nominal circuit.
         let point: Vec<f64> = axes.iter().map(|axis| axis.nominal).collect();
         let mut gradient = vec![0.0; axes.len()];
         linear.at(&point, &mut gradient);
         let own = self.model().parameters.len();
         let typical =
-            gradient[own..].iter().zip(&extras).map(|(slope, extra)| slope.abs() * extra.typical).sum();
-        Figure { nominal: Some(typical), ..self.figure_of(kind, &axes, &found, &items, true) }
+            gradient[own..].iter().zip(&extras).map(|(slope, extra)| slope.abs() * extra.axis.typical).sum();
+        Figure { nominal: Some(typical), ..self.figure_of(kind, &linear, &axes, &found, &items, true) }
     }
 
     /// A reading of one node with disturbances.
@@ -99,12 +100,18 @@ impl<'b> Stage<'b> {
         let kept = self.spread(key, current).ok_or_else(|| self.missing(key))?;
         let sign = if bound.high { -1.0 } else { 1.0 };
         extras.extend(self.rail_extras(bound.net.map(|net| (net, -sign))));
-        let mut kept_axis =
-            Extra::symmetric(Default::default(), Item::OpAmp(self.op_amp, key.name()), 0.0, 0.0, kept.rank);
+        let mut kept_axis = Extra::symmetric(
+            Default::default(),
+            Item::OpAmp(self.op_amp, Quality::distance(key)),
+            0.0,
+            0.0,
+            kept.rank,
+        );
         kept_axis.effect.direct = -1.0;
         kept_axis.axis = Axis {
             base: kept.nominal,
             nominal: kept.nominal,
+            typical: kept.nominal,
             low: kept.low,
             high: kept.high,
             rank: kept.rank,
@@ -130,7 +137,7 @@ impl<'b> Stage<'b> {
     pub(super) fn least(&self, kind: Kind, distances: &[Distance], ranges: Rank) -> Figure {
         let lowest =
             distances.iter().map(|distance| distance.nominal + distance.fall).fold(f64::INFINITY, f64::min);
-        let near = |distance: &&Distance| !(lowest < distance.nominal + distance.fall * 1.25);
+        let near = |distance: &&Distance| distance.nominal + distance.fall * 1.25 <= lowest;
         let studied = distances
             .iter()
             .filter(near)
@@ -143,12 +150,45 @@ impl<'b> Stage<'b> {
             return Figure::unknown(kind, "there is no distance to take");
         };
         let nominal = distances.iter().map(|distance| distance.nominal).fold(f64::INFINITY, f64::min);
-        let figure = self.figure_of(kind, &least.axes, found, &least.items, false);
+        let figure = self.figure_of(kind, &least.linear, &least.axes, found, &least.items, false);
         let rests_on = self.device().supply.map_or(ranges, |supply| ranges.max(supply.rank));
         let kept = |distance: &Distance| 0.0 <= distance.nominal + distance.fall;
         let zero = least.ground && distances.iter().all(|distance| distance.ground || kept(distance));
         Figure { nominal: Some(nominal), rests_on, zero, ..figure }
     }
+}
+
+/// The worse of a study and of those in which one disturbance has the other sign.
+///
+/// The sign that a disturbance has in the nominal circuit may be the wrong one at the worst corner: where both
+/// inputs see nearly the same resistance, the effect of the bias current is near nought and tolerances turn it.
+fn both_ways(linear: &Linear, axes: &[Axis], mut worst: Study) -> Study {
+    for extra in linear.model.parameters.len()..axes.len() {
+        if !may_turn(linear, axes, extra) {
+            continue;
+        }
+        for end in [axes[extra].low, axes[extra].high] {
+            let mut pinned = axes.to_vec();
+            pinned[extra] = Axis { low: end, high: end, ..axes[extra] };
+            match study(linear, &pinned, Bad::High) {
+                Some(found) if worst.worst < found.worst => worst = found,
+                _ => {}
+            }
+        }
+    }
+    worst
+}
+
+/// Whether the stage's values, within their ranges, may turn the sign of a disturbance's effect, to first order.
+fn may_turn(linear: &Linear, axes: &[Axis], extra: usize) -> bool {
+    let mut point: Vec<f64> = axes.iter().map(|axis| axis.nominal).collect();
+    point[extra] = axes[extra].high;
+    let mut gradient = vec![0.0; axes.len()];
+    let Some(effect) = linear.at(&point, &mut gradient) else { return true };
+    let own = gradient.iter().zip(axes).take(linear.model.parameters.len());
+    let reach: f64 =
+        own.map(|(slope, axis)| slope.abs() * (axis.high - axis.nominal).max(axis.nominal - axis.low)).sum();
+    effect.abs() <= reach
 }
 
 /// Appends the axes of extra values; returns them with the names of the extra ones.

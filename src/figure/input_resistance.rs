@@ -71,7 +71,7 @@ fn of_port(stage: &Stage, port: usize) -> Figure {
     let Some(nominal) = ratio.under.at(&point, &mut vec![0.0; axes.len()]) else { return unsolved() };
     if NONE <= nominal.abs() {
         return study(&ratio, &axes, Bad::Low)
-            .map_or_else(unsolved, |found| stage.figure_of(kind, &axes, &found, &[], false));
+            .map_or_else(unsolved, |found| stage.figure_of(kind, &ratio, &axes, &found, &[], false));
     }
     // The ideal nominal draws nothing; only the worst case has a number, and no ledger leads to it.
     match study(&ratio.under, &axes, Bad::High) {

@@ -1,10 +1,12 @@
 //! Ledgers: what a study found, item by item.
 
-use crate::circuit::{Circuit, ElementId, NetId};
+use crate::circuit::{Circuit, ElementId, ElementKind, NetId};
 use crate::device::Rank;
 use crate::figure::stage::Stage;
-use crate::figure::study::{Axis, Study};
-use crate::figure::{Bad, Figure, Kind};
+use crate::figure::study::{Axis, Quantity, Study};
+use crate::figure::trials::trials;
+use crate::figure::{Bad, Figure, Kind, Quality};
+use crate::quantity::Unit;
 use crate::solve::What;
 
 /// What a line of a ledger is about.
@@ -17,7 +19,7 @@ pub enum Item {
     /// What no single item explains.
     HigherOrder,
     /// A parameter of an op amp, by its index in the circuit.
-    OpAmp(u32, &'static str),
+    OpAmp(u32, Quality),
     /// A resistor.
     Resistor(ElementId),
     /// Resistors of a matched group that move together; the first of them.
@@ -36,7 +38,9 @@ impl Item {
             Item::Nominal => "nominal".to_owned(),
             Item::Values => "nominal values".to_owned(),
             Item::HigherOrder => "higher order".to_owned(),
-            Item::OpAmp(at, what) => format!("{} {what}", circuit.op_amps[at as usize].name),
+            Item::OpAmp(at, quality) => {
+                format!("{} {}", circuit.op_amps[at as usize].name, quality.label())
+            }
             Item::Resistor(id) => element(id).to_owned(),
             Item::Group(id) => format!("{} and its matched group", element(id)),
             Item::Rail(net) => format!("rail {}", circuit.net(net).name),
@@ -63,6 +67,8 @@ pub struct Line {
     pub effect: f64,
     /// How far its data can be trusted.
     pub rank: Rank,
+    /// Its value: nominal or typical, at the worst corner, and the unit of both.
+    pub value: Option<(f64, f64, Unit)>,
 }
 
 impl Stage<'_> {
@@ -74,14 +80,37 @@ impl Stage<'_> {
             None => Item::HigherOrder,
         };
         match &model.parameters[at].what {
-            What::InverseGain(amp) => op_amp(*amp, "open-loop gain"),
-            What::Differential(amp) => op_amp(*amp, "input resistance"),
-            What::Common(amp) => op_amp(*amp, "common-mode resistance"),
-            What::Output(amp) => op_amp(*amp, "output resistance"),
+            What::InverseGain(amp) => op_amp(*amp, Quality::OpenLoopGain),
+            What::Differential(amp) => op_amp(*amp, Quality::InputResistance),
+            What::Common(amp) => op_amp(*amp, Quality::CommonModeResistance),
+            What::Output(amp) => op_amp(*amp, Quality::OutputResistance),
             What::Resistors(branches) if branches.len() == 1 => {
                 Item::Resistor(model.elements[branches[0] as usize])
             }
             What::Resistors(branches) => Item::Group(model.elements[branches[0] as usize]),
+        }
+    }
+
+    /// An item's value in the unit that people read it in: at a nominal and at another coordinate.
+    fn natural(&self, item: Item, nominal: f64, corner: f64) -> Option<(f64, f64, Unit)> {
+        let circuit = self.board.circuit;
+        match item {
+            Item::OpAmp(_, quality) => {
+                Some((quality.natural(nominal), quality.natural(corner), quality.unit()))
+            }
+            Item::Resistor(id) | Item::Group(id) => match circuit.element(id).kind {
+                ElementKind::Resistor(part) => {
+                    let ohms = part.value?;
+                    Some((ohms * nominal.exp(), ohms * corner.exp(), Unit::Ohm))
+                }
+                _ => None,
+            },
+            Item::Rail(net) => {
+                let volts = circuit.potential(net)?.nominal;
+                Some((volts, volts + corner, Unit::Volt))
+            }
+            Item::Upstream(_) => Some((0.0, corner, Unit::Volt)),
+            Item::Nominal | Item::Values | Item::HigherOrder => None,
         }
     }
 
@@ -92,6 +121,7 @@ impl Stage<'_> {
     pub(super) fn figure_of(
         &self,
         kind: Kind,
+        quantity: &dyn Quantity,
         axes: &[Axis],
         found: &Study,
         extras: &[Item],
@@ -105,18 +135,19 @@ impl Stage<'_> {
             .filter(|(_, effect)| **effect != 0.0)
             .map(|(at, effect)| {
                 let item = if at < parameters { self.item(at) } else { extras[at - parameters] };
-                Line { item, effect: *effect, rank: axes[at].rank }
+                let value = self.natural(item, axes[at].typical, found.corner[at]);
+                Line { item, effect: *effect, rank: axes[at].rank, value }
             })
             .collect();
         lines.sort_by(|a, b| b.effect.abs().total_cmp(&a.effect.abs()));
         let squares: f64 = lines.iter().map(|line| line.effect * line.effect).sum();
         let rest = found.worst - found.base - lines.iter().map(|line| line.effect).sum::<f64>();
         if rest.abs() > 1e-12 * found.worst.abs() {
-            lines.push(Line { item: Item::HigherOrder, effect: rest, rank: Rank::Guaranteed });
+            lines.push(Line { item: Item::HigherOrder, effect: rest, rank: Rank::Guaranteed, value: None });
         }
         let first = if error { Item::Values } else { Item::Nominal };
         if !error || 1e-14 < found.base.abs() {
-            lines.insert(0, Line { item: first, effect: found.base, rank: Rank::Guaranteed });
+            lines.insert(0, Line { item: first, effect: found.base, rank: Rank::Guaranteed, value: None });
         }
         let rss = match (error, kind.doc().bad) {
             (true, _) => (squares + found.base * found.base).sqrt(),
@@ -135,6 +166,7 @@ impl Stage<'_> {
             absent: false,
             needed: None,
             zero: false,
+            trials: trials(quantity, axes, self.trials, error && kind.doc().bad == Bad::High),
             ledger: lines,
         }
     }

@@ -54,6 +54,7 @@ pub(super) fn axes(model: &Model, ideal_base: bool) -> Vec<Axis> {
         .map(|parameter| Axis {
             base: if ideal_base { parameter.ideal } else { parameter.nominal },
             nominal: parameter.nominal,
+            typical: parameter.nominal,
             low: parameter.low,
             high: parameter.high,
             rank: parameter.rank,
@@ -127,7 +128,7 @@ impl Linear<'_> {
     }
 
     /// Transfers of the reading from every port, with the coefficients of ports that are read directly.
-    pub(super) fn from_ports(&self, solved: &Solved<f64>) -> (List<f64>, List<f64>, f64) {
+    pub(super) fn transfers(&self, solved: &Solved<f64>) -> (List<f64>, List<f64>, f64) {
         let coefficients = self.coefficients(solved);
         let weights = solved.adjoint(&coefficients);
         let mut ports = solved.from_ports(&weights);

@@ -23,6 +23,7 @@ impl Stage<'_> {
                 name: self.board.circuit.net(port.net).name.clone(),
                 signal: 0 < self.board.level(port.net),
             },
+            adjusts: None,
             ideal: ideal[at],
             actual: actual.as_ref().map(|actual| actual[at]),
         });

@@ -61,9 +61,10 @@ pub(super) fn compute(stage: &Stage) -> Figure {
     let nominal: Vec<f64> = axes.iter().map(|axis| axis.nominal).collect();
     let sign = quantity.signed(&nominal, &mut vec![0.0; axes.len()]);
     match (study(&quantity, &axes, Bad::Low), sign) {
-        (Some(found), Some(sign)) => {
-            Figure { sign: Some(sign.signum()), ..stage.figure_of(Kind::LoopGain, &axes, &found, &[], false) }
-        }
+        (Some(found), Some(sign)) => Figure {
+            sign: Some(sign.signum()),
+            ..stage.figure_of(Kind::LoopGain, &quantity, &axes, &found, &[], false)
+        },
         _ => Figure::unknown(Kind::LoopGain, "its equations have no solution at the worst corner"),
     }
 }

@@ -34,7 +34,7 @@ pub(super) fn compute(stage: &Stage) -> Figure {
     };
     let axes = axes(&bare, false);
     match study(&linear, &axes, Bad::High) {
-        Some(found) => stage.figure_of(Kind::OutputResistance, &axes, &found, &[], false),
+        Some(found) => stage.figure_of(Kind::OutputResistance, &linear, &axes, &found, &[], false),
         None => Figure::unknown(Kind::OutputResistance, "its equations have no solution without a load"),
     }
 }

@@ -5,6 +5,10 @@ use crate::figure::linear::Linear;
 use crate::figure::stage::Stage;
 use crate::solve::{Board, Excitation, Node, PrimaryKind, Row, Solved};
 
+/// An output that moves less than this share of its swing only carries what leaks into it from elsewhere: it
+/// is a reference's, and its span is no measure.
+const LEAST_SPAN: f64 = 1e-4;
+
 /// A primary whose share in a quantity is smaller than this need not have a known range.
 const NEGLIGIBLE: f64 = 1e-6;
 
@@ -77,13 +81,12 @@ impl Drive {
 
     /// The declared output span, else the guaranteed swing between the rails; with whether it is declared.
     pub(super) fn span(&self, stage: &Stage) -> Option<(f64, bool)> {
-        if let Ok([low, high]) = &self.ends
-            && 1e-9 < high.reached - low.reached
-        {
-            return Some((high.reached - low.reached, true));
+        let swing = stage.guaranteed_swing().map(|(low, high)| high - low).filter(|swing| 0.0 < *swing);
+        let least = swing.unwrap_or(1.0) * LEAST_SPAN;
+        match &self.ends {
+            Ok([low, high]) if least < high.reached - low.reached => Some((high.reached - low.reached, true)),
+            _ => swing.map(|swing| (swing, false)),
         }
-        let (low, high) = stage.guaranteed_swing()?;
-        (low < high).then_some((high - low, false))
     }
 }
 
@@ -110,6 +113,9 @@ pub(super) fn extremes(board: &Board, row: &Row) -> (Result<[Extreme; 2], String
     (Ok(ends), rank)
 }
 
+/// A rail's primary, its deviation with its rank, and the ports it moves with their shares.
+pub(super) type RailMoves = (u32, f64, Rank, Vec<(usize, f64)>);
+
 impl Stage<'_> {
     /// The output's transfers from the board's primaries.
     pub(super) fn output_row(&self) -> Row {
@@ -121,29 +127,43 @@ impl Stage<'_> {
     pub(super) fn row_of(&self, linear: &Linear) -> Option<Row> {
         let model = self.model();
         let solved = Solved::new(&model.network, model.nominal.clone()).ok()?;
-        let (ports, currents, constant) = linear.from_ports(&solved);
+        let (ports, currents, constant) = linear.transfers(&solved);
         let weight = |node: Node| match node {
             Node::Unknown(at) => currents[at as usize],
             Node::Ground | Node::Port(_) => 0.0,
         };
-        let feeds: Vec<f64> =
-            self.board.currents(self.block).map(|(into, from)| weight(into) - weight(from)).collect();
-        Some(self.board.compose(self.block, &ports, &feeds, constant))
+        let own = self.board.own(self.block, weight, constant);
+        Some(self.board.compose(self.block, &ports, &own))
+    }
+
+    /// The value of a primary at one end of a quantity.
+    pub(super) fn value_at(&self, end: &Extreme, primary: u32) -> f64 {
+        match end.values.binary_search_by_key(&primary, |(at, _)| *at) {
+            Ok(found) => end.values[found].1,
+            Err(_) => self.board.primaries[primary as usize].rest,
+        }
+    }
+
+    /// What draws from the stage's output by itself: primary and the current that leaves for one unit of it.
+    pub(super) fn drained(&self) -> Vec<(u32, f64)> {
+        let drains = self.model().drains.iter().filter(|drain| Node::Unknown(drain.output) == self.output());
+        drains.map(|drain| (self.board.primary_of_feed(drain.feed), drain.amps)).collect()
     }
 
     /// The block's excitation with the primaries at one end of a quantity.
     pub(super) fn excited(&self, end: &Extreme) -> Excitation<f64> {
         let board = self.board;
-        let value = |primary: u32| match end.values.binary_search_by_key(&primary, |(at, _)| *at) {
-            Ok(found) => end.values[found].1,
-            Err(_) => board.primaries[primary as usize].rest,
-        };
+        let value = |primary: u32| self.value_at(end, primary);
         let port = |port| board.row(port).iter().map(|(at, entry)| entry * value(*at)).sum();
         let mut injections = smallvec::SmallVec::new();
         for ((into, from), at) in board.currents(self.block).zip(&self.cut().currents) {
             let amps = value(board.first_current as u32 + at);
             injections.push((into, amps));
             injections.push((from, -amps));
+        }
+        for drain in &self.model().drains {
+            let amps = drain.amps * value(board.primary_of_feed(drain.feed));
+            injections.push((Node::Unknown(drain.output), -amps));
         }
         Excitation {
             ports: self.model().ports.iter().map(port).collect(),
@@ -174,8 +194,8 @@ impl Stage<'_> {
     }
 
     /// Ports' transfers from each rail that deviates: primary, deviation, rank, and the ports it moves.
-    pub(super) fn rails(&self) -> Vec<(u32, f64, Rank, Vec<(usize, f64)>)> {
-        let mut rails: Vec<(u32, f64, Rank, Vec<(usize, f64)>)> = Vec::new();
+    pub(super) fn rails(&self) -> Vec<RailMoves> {
+        let mut rails: Vec<RailMoves> = Vec::new();
         for (at, port) in self.model().ports.iter().enumerate() {
             for (primary, entry) in self.board.row(port) {
                 let rail = &self.board.primaries[*primary as usize];

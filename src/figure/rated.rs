@@ -2,10 +2,10 @@
 
 use crate::device::{Key, Rank};
 use crate::figure::linear::{Linear, Reading, axes};
-use crate::figure::range::extremes;
+use crate::figure::range::{Extreme, extremes};
 use crate::figure::stage::{Main, Stage};
 use crate::figure::study::{Axis, Quantity, study};
-use crate::figure::{Bad, Figure, Item, Kind};
+use crate::figure::{Bad, Figure, Item, Kind, Quality};
 use crate::solve::{Excitation, Solved};
 
 /// The rated output current, ampere.
@@ -65,34 +65,41 @@ fn share(kind: Kind, stage: &Stage, from: Option<Main>) -> Result<Figure, String
         excitation,
         extras: Vec::new(),
     };
+    // What draws from the output by itself belongs to the whole current, but to no branch.
+    let drained = if kind == Kind::OutputCurrent { stage.drained() } else { Vec::new() };
     let row = stage
         .row_of(&current(1.0, Excitation::none()))
         .ok_or_else(|| "its equations have no solution".to_owned())?;
-    let (excitation, sign, bound) = match extremes(stage.board, &row).0 {
+    let row = stage.board.compose(stage.block, &[], &[row, drained.clone()].concat());
+    let taken = |end: &Extreme| -> f64 {
+        drained.iter().map(|(primary, amps)| amps * stage.value_at(end, *primary)).sum()
+    };
+    let (excitation, sign, beside, bound) = match extremes(stage.board, &row).0 {
         Ok([low, high]) => {
             let end = if high.reached.abs() < low.reached.abs() { &low } else { &high };
-            (stage.excited(end), if end.reached < 0.0 { -1.0 } else { 1.0 }, false)
+            (stage.excited(end), if end.reached < 0.0 { -1.0 } else { 1.0 }, taken(end), false)
         }
         Err(name) => {
             let missing = || format!("the range of {name} is not declared");
             let (excitation, sign) =
                 full_swing(stage, from, &current(1.0, Excitation::none())).ok_or_else(missing)?;
-            (excitation, sign, true)
+            (excitation, sign, taken(&Extreme::default()), true)
         }
     };
     let mut axes = axes(model, false);
     axes.push(Axis {
         base: rated.nominal,
         nominal: rated.nominal,
+        typical: rated.nominal,
         low: rated.low,
         high: rated.nominal,
         rank: rated.rank,
     });
-    let quantity = Share { current: current(sign, excitation) };
+    let quantity = Share { current: Linear { constant: sign * beside, ..current(sign, excitation) } };
     let found = study(&quantity, &axes, Bad::High)
         .ok_or_else(|| "its equations have no solution at the worst corner".to_owned())?;
-    let items = [Item::OpAmp(stage.op_amp, "rated output current")];
-    let figure = stage.figure_of(kind, &axes, &found, &items, false);
+    let items = [Item::OpAmp(stage.op_amp, Quality::RatedCurrent)];
+    let figure = stage.figure_of(kind, &quantity, &axes, &found, &items, false);
     let rests_on = if bound { Rank::Assumed } else { Rank::Guaranteed };
     Ok(Figure { bound, rests_on, ..figure })
 }
@@ -112,6 +119,13 @@ fn full_swing(stage: &Stage, from: Option<Main>, current: &Linear) -> Option<(Ex
     let point: Vec<f64> = model.parameters.iter().map(|parameter| parameter.nominal).collect();
     let reached = Linear { excitation: excitation.clone(), ..current.clone() }.at(&point, &mut gradient)?;
     Some((excitation, if reached < 0.0 { -1.0 } else { 1.0 }))
+}
+
+impl Stage<'_> {
+    /// The rated output current, ampere.
+    pub(super) fn rated_current(&self) -> Option<f64> {
+        rated(self).map(|rated| rated.nominal)
+    }
 }
 
 /// The rated output current of a stage's device.

@@ -30,7 +30,7 @@ pub(super) fn compute(stage: &Stage, legs: Option<Legs>) -> Figure {
     let Some(found) = study(&quantity, &axes, Bad::Either) else {
         return Figure::unknown(kind, "its equations have no solution at the worst corner");
     };
-    let ratio = stage.figure_of(kind, &axes, &found, &[], true);
+    let ratio = stage.figure_of(kind, &quantity, &axes, &found, &[], true);
     let decibel = |ratio: f64| (NONE < ratio.abs()).then(|| -20.0 * ratio.abs().log10());
     let mut ledger = ratio.ledger;
     // What the nominal values have of it is the base of the ratio, not an effect of a tolerance.

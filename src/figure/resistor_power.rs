@@ -75,7 +75,7 @@ pub(super) fn compute(stage: &Stage) -> Figure {
         let Some(found) = study(&share, &axes, Bad::High) else {
             return Figure::unknown(kind, "its equations have no solution at the worst corner");
         };
-        let figure = stage.figure_of(kind, &axes, &found, &[Item::Resistor(id)], false);
+        let figure = stage.figure_of(kind, &share, &axes, &found, &[Item::Resistor(id)], false);
         if worst.as_ref().is_none_or(|known| known.worst < figure.worst) {
             worst = Some(figure);
         }

@@ -62,7 +62,7 @@ fn of_source(stage: &Stage, from: Main) -> Option<Figure> {
     };
     let axes = axes(stage.model(), false);
     Some(match study(&linear, &axes, Bad::High) {
-        Some(found) => stage.figure_of(kind, &axes, &found, &[], false),
+        Some(found) => stage.figure_of(kind, &linear, &axes, &found, &[], false),
         None => Figure::unknown(kind, "its equations have no solution at the worst corner"),
     })
 }

@@ -68,6 +68,8 @@ pub struct Transfer {
     pub ideal: f64,
     /// With the real op amp; `None` for an unknown device.
     pub actual: Option<f64>,
+    /// Least and greatest over the travel of adjustable parts, where there are any.
+    pub adjusts: Option<(f64, f64)>,
 }
 
 /// One stage while its figures are computed.
@@ -83,6 +85,8 @@ pub struct Stage<'b> {
     pub op_amp: u32,
     /// What moves each amplifier's output beyond its signals, volt, with its rank.
     pub deviations: &'b [(f64, Rank)],
+    /// How many random trials each figure gets.
+    pub trials: u32,
 }
 
 /// Everything that is computed of a stage.
@@ -106,7 +110,7 @@ impl<'b> Stage<'b> {
     /// The stage of an amplifier; `None` for a controlled source.
     pub fn of(board: &'b Board<'b>, deviations: &'b [(f64, Rank)], amp: AmpId) -> Option<Stage<'b>> {
         let (block, member) = board.place[amp.0 as usize];
-        Some(Stage { board, block, member, op_amp: board.layout.amp(amp).op_amp?, deviations })
+        Some(Stage { board, block, member, op_amp: board.layout.amp(amp).op_amp?, deviations, trials: 0 })
     }
 
     /// The block's equations.
@@ -268,6 +272,7 @@ impl<'b> Stage<'b> {
         let real = Solved::new(&model.network, model.nominal.clone()).ok().filter(|_| known);
         let weights = real.as_ref().map(|real| real.adjoint(&[(self.output(), 1.0)]));
         let make = |input: Input| Transfer {
+            adjusts: real.as_ref().and_then(|_| self.adjusts(input.from)),
             ideal: self.transfer(&twin, &ideal, input.from),
             actual: real
                 .as_ref()

@@ -16,6 +16,8 @@ pub(super) struct Axis {
     pub base: f64,
     /// Nominal value.
     pub nominal: f64,
+    /// What it usually is: nominal, or the typical magnitude of a value of either sign.
+    pub typical: f64,
     /// Least value.
     pub low: f64,
     /// Greatest value.
@@ -89,33 +91,53 @@ fn corner(
     direction: f64,
 ) -> Option<(f64, Vec<f64>)> {
     let mut gradient = gradient.to_vec();
-    let mut best: Option<(f64, Vec<f64>)> = None;
-    for _ in 0..REREADS {
-        let point: Vec<f64> = axes
-            .iter()
-            .zip(&gradient)
-            .map(|(axis, slope)| {
-                let slope = slope * direction;
-                if slope > 0.0 {
-                    axis.high
-                } else if slope < 0.0 {
-                    axis.low
-                } else {
-                    axis.nominal
-                }
-            })
-            .collect();
-        if best.as_ref().is_some_and(|(_, known)| *known == point) {
+    let mut best = toward(axes, &gradient, direction);
+    let mut reached = quantity.at(&best, &mut gradient)?;
+    for _ in 1..REREADS {
+        let point = toward(axes, &gradient, direction);
+        if point == best {
             break;
         }
         let value = quantity.at(&point, &mut gradient)?;
-        let better = best.as_ref().is_none_or(|(known, _)| known * direction <= value * direction);
-        if !better {
+        if reached * direction <= value * direction {
+            (reached, best) = (value, point);
+            continue;
+        }
+        // All turned signs together were no gain; one of them alone may be.
+        let before = reached;
+        for at in 0..axes.len() {
+            let kept = std::mem::replace(&mut best[at], point[at]);
+            if kept == point[at] {
+                continue;
+            }
+            let value = quantity.at(&best, &mut gradient)?;
+            if reached * direction < value * direction {
+                reached = value;
+            } else {
+                best[at] = kept;
+            }
+        }
+        if reached == before {
             break;
         }
-        best = Some((value, point));
+        quantity.at(&best, &mut gradient)?;
     }
-    best
+    Some((reached, best))
+}
+
+/// The corner that the signs of a gradient give in one direction.
+fn toward(axes: &[Axis], gradient: &[f64], direction: f64) -> Vec<f64> {
+    let end = |(axis, slope): (&Axis, &f64)| {
+        let slope = slope * direction;
+        if slope > 0.0 {
+            axis.high
+        } else if slope < 0.0 {
+            axis.low
+        } else {
+            axis.nominal
+        }
+    };
+    axes.iter().zip(gradient).map(end).collect()
 }
 
 /// Effect of every axis along the straight line between two points.

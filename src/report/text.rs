@@ -13,12 +13,14 @@ mod snippet;
 mod survey;
 mod stages;
 mod table;
+mod trial;
 mod verdict;
 
 pub use devices::{device_text, devices_text};
 pub use explain::{topic_text, topics_text};
 pub use ledger::ledger_text;
 pub use survey::stages_text;
+pub use trial::trial_text;
 
 use crate::report::{BoardReport, CAUTION_LINE, Report};
 use crate::source::Sources;

@@ -393,7 +393,9 @@ fn deciding(subject: &Subject, figure: &Figure) -> String {
         _ if figure.bound => "the range of its signals".to_owned(),
         Some(Item::Rail(net)) => format!("the tolerance of rail {}", subject.circuit.net(net).name),
         Some(Item::Resistor(_) | Item::Group(_)) => "the tolerance of its resistors".to_owned(),
-        Some(Item::OpAmp(at, what)) => format!("{what} of {}", subject.circuit.op_amps[at as usize].name),
+        Some(Item::OpAmp(at, quality)) => {
+            format!("{} of {}", quality.label(), subject.circuit.op_amps[at as usize].name)
+        }
         Some(Item::Upstream(net)) => {
             format!("what is assumed of the stage that drives {}", subject.circuit.net(net).name)
         }
@@ -412,7 +414,7 @@ fn labels(subject: &Subject, figure: &Figure) -> Vec<Label> {
             continue;
         }
         let what = match line.item {
-            Item::OpAmp(_, what) => what,
+            Item::OpAmp(_, quality) => quality.label(),
             _ => "tolerance",
         };
         let text = format!("{what} {}", portion(share));

@@ -1,18 +1,13 @@
 //! The board composed of its blocks: what each block draws from those that feed it, and one row of
 //! transfers from the board's primary quantities for every output.
 
-use crate::block::{AmpId, Layout, Port, Role, open_loop, outside_loop, rectifier};
+use crate::block::{AmpId, Layout, Port, Role};
 use crate::circuit::{Circuit, DeclaredPair, NetId, Tie};
 use crate::device::{Catalogue, Rank};
 use crate::solve::device::{Device, Supply};
-use crate::solve::model::{Fault, Model};
-use crate::solve::{Excitation, List, LoadStamp, Node, Solved, regenerates};
+use crate::solve::model::Model;
+use crate::solve::{Feed, Node};
 use rustc_hash::FxHashMap;
-
-/// Rows are swept forward until none moves by more than this share of its largest entry.
-const STILL: f64 = 1e-13;
-/// Random boards with weak op amps took 6 sweeps at most.
-const MOST_SWEEPS: usize = 40;
 
 /// What a primary quantity is.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -123,8 +118,17 @@ impl<'a> Board<'a> {
         };
         board.rank_outputs();
         board.load();
-        board.enumerate();
-        board.sweep();
+        // A block whose loads make it regenerate is found by the sweep; its outputs are primaries then.
+        loop {
+            board.enumerate();
+            let faults = board.sweep();
+            if faults.is_empty() {
+                break;
+            }
+            for (block, fault) in faults {
+                board.models[block].fault.get_or_insert(fault);
+            }
+        }
         board
     }
 
@@ -176,110 +180,44 @@ impl<'a> Board<'a> {
         }
     }
 
-    /// What a quantity gains from each primary, given its transfers from a block's ports, from the
-    /// currents that feed the block, and its constant part.
-    pub fn compose(&self, block: usize, ports: &[f64], currents: &[f64], constant: f64) -> Row {
+    /// What a quantity gains from each primary, given its transfers from a block's ports and what it has
+    /// of the block's own: see [`Board::own`].
+    pub fn compose(&self, block: usize, ports: &[f64], own: &[(u32, f64)]) -> Row {
         let mut terms: Row = Vec::with_capacity(8);
         for (port, transfer) in self.models[block].ports.iter().zip(ports) {
             if *transfer != 0.0 {
                 terms.extend(self.row(port).iter().map(|(at, entry)| (*at, entry * transfer)));
             }
         }
-        let feeds = &self.layout.blocks[block].currents;
-        terms.extend(
-            feeds.iter().zip(currents).map(|(at, transfer)| (self.first_current as u32 + at, *transfer)),
-        );
-        terms.push((0, constant));
-        terms.sort_by_key(|(at, _)| *at);
-        let mut row: Row = Vec::with_capacity(terms.len());
-        for (at, entry) in terms {
-            match row.last_mut() {
-                Some((last, sum)) if *last == at => *sum += entry,
-                _ => row.push((at, entry)),
-            }
-        }
-        row.retain(|(_, entry)| *entry != 0.0);
-        row
+        terms.extend(own);
+        collect(terms)
     }
 
-    /// From the last block to the first: each is solved under its load and reduced to what it draws from
-    /// the outputs that feed it.
-    fn load(&mut self) {
-        for at in (0..self.models.len()).rev() {
-            let fault = self.verify(at);
-            self.models[at].fault = self.models[at].fault.take().or(fault);
-            let Some(draws) = self.draws(at) else { continue };
-            for (amp, net, siemens) in draws {
-                let (block, _) = self.place[amp.0 as usize];
-                let output = self.layout.amp(amp).output;
-                let role = self.layout.role(net);
-                let model = &mut self.models[block];
-                let (Some(Node::Unknown(output)), node) = (model.node(output), model.port(net, role)) else {
-                    continue;
-                };
-                model.network.loads.push(LoadStamp { output, node, siemens });
-            }
+    /// What a quantity gains from the currents that feed a block, from what later blocks draw from it by
+    /// themselves, and its constant part; `weight` is the effect of a current into a node.
+    pub fn own(&self, block: usize, weight: impl Fn(Node) -> f64, constant: f64) -> Row {
+        let mut terms: Row = vec![(0, constant)];
+        for (at, (into, from)) in self.layout.blocks[block].currents.iter().zip(self.currents(block)) {
+            terms.push((self.first_current as u32 + at, weight(into) - weight(from)));
         }
+        for drain in &self.models[block].drains {
+            terms.push((self.primary_of_feed(drain.feed), -drain.amps * weight(Node::Unknown(drain.output))));
+        }
+        collect(terms)
     }
 
-    /// What makes a block's figures meaningless though its equations stand.
-    fn verify(&self, at: usize) -> Option<Fault> {
-        let (model, block) = (&self.models[at], &self.layout.blocks[at]);
-        if model.fault.is_some() {
-            return None;
+    /// The primary behind what later blocks draw by themselves.
+    pub fn primary_of_feed(&self, feed: Feed) -> u32 {
+        match feed {
+            Feed::Constant => 0,
+            Feed::Current(at) => self.first_current as u32 + at,
         }
-        if let Some(element) = outside_loop(self.circuit, self.layout, block) {
-            return Some(Fault::OutsideLoop(element));
-        }
-        if let Some(diode) = rectifier(self.circuit, self.layout, block) {
-            return Some(Fault::NonLinear(diode));
-        }
-        if open_loop(self.circuit, self.layout, block) {
-            return Some(Fault::OpenLoop);
-        }
-        let twin = model.nominal.twin(|amp| model.op_amps[amp].is_some());
-        if let Err(singular) = Solved::new(&model.network, twin) {
-            return Some(Fault::NoTwin(model.net(singular.unknown)));
-        }
-        if let Err(singular) = Solved::new(&model.network, model.nominal.clone()) {
-            return Some(Fault::Singular(model.net(singular.unknown)));
-        }
-        regenerates(&model.network, &model.nominal).then_some(Fault::Regenerative)
-    }
-
-    /// Currents that a block draws from outputs for a volt at a net: output, net, siemens.
-    fn draws(&self, at: usize) -> Option<Vec<(AmpId, NetId, f64)>> {
-        let (model, block) = (&self.models[at], &self.layout.blocks[at]);
-        let fed: Vec<(usize, AmpId)> = model
-            .ports
-            .iter()
-            .enumerate()
-            .filter_map(|(place, port)| match port.role {
-                Role::Output(amp) => Some((place, amp)),
-                _ => None,
-            })
-            .collect();
-        if fed.is_empty() {
-            return None;
-        }
-        let solved = Solved::new(&model.network, model.nominal.clone()).ok()?;
-        let counted = if block.owns_network { model.feedback_branches } else { 0 };
-        let mut draws = Vec::new();
-        for (column, port) in model.ports.iter().enumerate() {
-            let state = solved.forward(&Excitation::port(model.ports.len(), column));
-            let drawn =
-                solved.drawn(&state, |branch| branch < counted, |amp| block.owns_network || model.held(amp));
-            for (place, amp) in &fed {
-                if drawn[*place] != 0.0 {
-                    draws.push((*amp, port.net, drawn[*place]));
-                }
-            }
-        }
-        Some(draws)
     }
 
     fn enumerate(&mut self) {
         let circuit = self.circuit;
+        self.primaries.clear();
+        self.fixed.clear();
         self.primaries.push(Primary {
             kind: PrimaryKind::Constant,
             name: String::new(),
@@ -344,46 +282,6 @@ impl<'a> Board<'a> {
         primary
     }
 
-    fn sweep(&mut self) {
-        let steps: Vec<Option<Step>> = (0..self.models.len()).map(|at| self.step(at)).collect();
-        let looks_ahead = steps.iter().flatten().any(|step| step.looks_ahead);
-        for _ in 0..MOST_SWEEPS {
-            let mut moved = false;
-            for (at, step) in steps.iter().enumerate() {
-                let Some(step) = step else { continue };
-                for (member, (ports, currents, constant)) in step.outputs.iter().enumerate() {
-                    let row = self.compose(at, ports, currents, *constant);
-                    let amp = self.layout.blocks[at].members[member].0 as usize;
-                    moved |= looks_ahead && differs(&self.rows[amp], &row);
-                    self.rows[amp] = row;
-                }
-            }
-            if !moved {
-                break;
-            }
-        }
-    }
-
-    fn step(&self, at: usize) -> Option<Step> {
-        let model = &self.models[at];
-        if model.fault.is_some() {
-            return None;
-        }
-        let solved = Solved::new(&model.network, model.nominal.clone()).ok()?;
-        let outputs = (0..model.network.members).map(|member| {
-            let output = model.network.amps[member].output.map_or(Node::Ground, Node::Unknown);
-            let weights = solved.adjoint(&[(output, 1.0)]);
-            let currents =
-                self.currents(at).map(|(into, from)| weights.current(into) - weights.current(from));
-            (solved.from_ports(&weights), currents.collect(), solved.from_shorts(&weights))
-        });
-        let looks_ahead = model.ports.iter().any(|port| match port.role {
-            Role::Output(amp) => at < self.place[amp.0 as usize].0,
-            _ => false,
-        });
-        Some(Step { outputs: outputs.collect(), looks_ahead })
-    }
-
     /// The nodes that each current of a block flows into and out of.
     pub fn currents(&self, block: usize) -> impl Iterator<Item = (Node, Node)> + '_ {
         let model = &self.models[block];
@@ -395,10 +293,18 @@ impl<'a> Board<'a> {
     }
 }
 
-/// Transfers of a block's outputs from its ports, its currents, and its constant part.
-struct Step {
-    outputs: Vec<(List<f64>, List<f64>, f64)>,
-    looks_ahead: bool,
+/// A row out of terms in any order.
+fn collect(mut terms: Row) -> Row {
+    terms.sort_by_key(|(at, _)| *at);
+    let mut row: Row = Vec::with_capacity(terms.len());
+    for (at, entry) in terms {
+        match row.last_mut() {
+            Some((last, sum)) if *last == at => *sum += entry,
+            _ => row.push((at, entry)),
+        }
+    }
+    row.retain(|(_, entry)| *entry != 0.0);
+    row
 }
 
 fn signal(kind: PrimaryKind, name: String, range: Option<(f64, f64)>) -> Primary {
@@ -449,10 +355,4 @@ pub(super) fn rail_deviation(circuit: &Circuit, net: NetId, assumed: f64) -> (f6
         }
         _ => (potential.nominal.abs() * assumed, Rank::Assumed),
     }
-}
-
-fn differs(old: &Row, new: &Row) -> bool {
-    let most = new.iter().fold(0.0f64, |most, (_, entry)| most.max(entry.abs()));
-    old.len() != new.len()
-        || old.iter().zip(new).any(|((a, x), (b, y))| a != b || STILL * most < (x - y).abs())
 }

@@ -63,11 +63,13 @@ impl<T: Scalar> Solved<'_, T> {
         leaving
     }
 
-    /// The current that leaves each port into the block, through the branches and amplifiers that count.
+    /// The current that leaves each port into the block, through the first branches and shorts and the
+    /// amplifiers that count.
     pub fn drawn(
         &self,
         state: &State<T>,
-        branch_counts: impl Fn(usize) -> bool,
+        branches: usize,
+        shorts: usize,
         amp_counts: impl Fn(usize) -> bool,
     ) -> Vec<T> {
         let mut drawn = vec![T::zero(); self.network.ports];
@@ -79,10 +81,8 @@ impl<T: Scalar> Solved<'_, T> {
             }
         };
         let volts = |a: Node, b: Node| state.volts(a) - state.volts(b);
-        for (at, (branch, siemens)) in self.network.branches.iter().zip(&self.values.siemens).enumerate() {
-            if branch_counts(at) {
-                flow(branch.a, branch.b, *siemens * volts(branch.a, branch.b));
-            }
+        for (branch, siemens) in self.network.branches[..branches].iter().zip(&self.values.siemens) {
+            flow(branch.a, branch.b, *siemens * volts(branch.a, branch.b));
         }
         for (at, (amp, values)) in self.network.amps.iter().zip(&self.values.amps).enumerate() {
             if amp_counts(at) {
@@ -92,7 +92,7 @@ impl<T: Scalar> Solved<'_, T> {
                 }
             }
         }
-        for (at, short) in self.network.shorts.iter().enumerate() {
+        for (at, short) in self.network.shorts[..shorts].iter().enumerate() {
             flow(short.a, short.b, state.unknowns[self.network.unknowns + at]);
         }
         drawn

@@ -6,7 +6,7 @@ use crate::device::Rank;
 use crate::solve::device::Device;
 use crate::solve::parameter::{Parameter, What};
 use crate::solve::shorted::{Joined, Shorted};
-use crate::solve::{AmpStamp, AmpValues, Branch, Network, Node, Short, Values};
+use crate::solve::{AmpStamp, AmpValues, Branch, Drain, Network, Node, Short, Values};
 use petgraph::unionfind::UnionFind;
 use rustc_hash::FxHashMap;
 use smallvec::{SmallVec, smallvec};
@@ -58,6 +58,10 @@ pub struct Model {
     pub elements: Vec<ElementId>,
     /// How many branches belong to the network that reaches the inputs; the others are loads.
     pub feedback_branches: usize,
+    /// The same of the branches without resistance.
+    pub feedback_shorts: usize,
+    /// What later blocks and current sources draw from the outputs by themselves.
+    pub drains: Vec<Drain>,
     /// Op amp of each amplifier; `None` for a controlled source.
     pub op_amps: Vec<Option<u32>>,
     /// Why it can't be solved, where it can't.
@@ -119,6 +123,8 @@ impl Model {
             parameters: Vec::new(),
             elements: Vec::new(),
             feedback_branches: 0,
+            feedback_shorts: 0,
+            drains: Vec::new(),
             op_amps: Vec::new(),
             fault: None,
             ports: block.ports.clone(),
@@ -128,6 +134,7 @@ impl Model {
         builder.amps(&mut model, devices);
         builder.branches(&mut model, &block.network);
         model.feedback_branches = model.elements.len();
+        model.feedback_shorts = model.network.shorts.len();
         builder.branches(&mut model, &block.loads);
         if MOST_UNKNOWNS < model.network.size() {
             builder.fault.get_or_insert(Fault::TooLarge(model.network.size()));

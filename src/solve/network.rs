@@ -56,6 +56,26 @@ pub struct LoadStamp<T> {
     pub siemens: T,
 }
 
+/// What draws current from an output without any voltage of a port.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
+pub enum Feed {
+    /// The voltages of floating sources.
+    Constant,
+    /// A current, by its place among the circuit's.
+    Current(u32),
+}
+
+/// What later blocks and current sources draw from an output by themselves.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Drain {
+    /// The unknown that is the output.
+    pub output: u32,
+    /// What draws.
+    pub feed: Feed,
+    /// Current that leaves the output for one unit of it.
+    pub amps: f64,
+}
+
 /// The structure of a block.
 #[derive(Debug, Clone, Default)]
 pub struct Network<T> {

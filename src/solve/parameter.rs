@@ -87,8 +87,13 @@ pub fn point(parameters: &[Parameter], pick: impl Fn(&Parameter) -> f64) -> Vec<
 pub fn regenerates(network: &Network<f64>, values: &Values<f64>) -> bool {
     let mut dead = values.clone();
     for amp in &mut dead.amps[..network.members] {
-        amp.inverse_gain = 1e15;
+        // A controlled source may invert by itself: dead, it keeps its sign.
+        amp.inverse_gain = 1e15f64.copysign(amp.inverse_gain);
     }
-    let sign = |values: Values<f64>| crate::solve::Solved::new(network, values).map(|solved| solved.sign());
-    matches!((sign(values.clone()), sign(dead)), (Ok(live), Ok(dead)) if live != dead)
+    // Later blocks' draws may be those of negative resistances: beside dead amplifiers they count for nothing.
+    let unloaded = Network { loads: Vec::new(), ..network.clone() };
+    let sign = |network: &Network<f64>, values: Values<f64>| {
+        crate::solve::Solved::new(network, values).map(|solved| solved.sign())
+    };
+    matches!((sign(network, values.clone()), sign(&unloaded, dead)), (Ok(live), Ok(dead)) if live != dead)
 }

@@ -62,6 +62,9 @@ pub fn figure(slug: &'static str, unit: Unit, bad: Bad) -> FigureReport {
         rss: None,
         sign: None,
         limit: None,
+        ledger_unit: unit,
+        worked: None,
+        trials: None,
         stated: false,
         status: Status::Within,
         reason: None,
@@ -72,7 +75,7 @@ pub fn figure(slug: &'static str, unit: Unit, bad: Bad) -> FigureReport {
 
 /// A ledger's line.
 pub fn line(item: &str, effect: f64, share: Option<f64>, against: bool) -> LedgerLine {
-    LedgerLine { item: item.to_owned(), effect, share, against }
+    LedgerLine { item: item.to_owned(), effect, share, value: None, origin: None, against }
 }
 
 /// A finding without places.
@@ -148,6 +151,7 @@ pub fn pressure_stage() -> StageReport {
         group: None,
         output: "PRESS_OUT".to_owned(),
         transfers: vec![TransferReport {
+            adjusts: None,
             input: "PRESS_IN".to_owned(),
             unit: "V/V",
             frequency: 0.0,
@@ -155,6 +159,7 @@ pub fn pressure_stage() -> StageReport {
             actual: Some(100.989_799_1),
             error: Some(-0.000_100_999_009_900_990_1),
         }],
+        worked: None,
         local: None,
         pins: vec![pins("low", -0.02), pins("high", 0.02)],
         reach: None,
@@ -186,6 +191,7 @@ fn oxygen_stage() -> StageReport {
         group: None,
         output: "OXY_OUT".to_owned(),
         transfers: vec![TransferReport {
+            adjusts: None,
             input: "N004".to_owned(),
             unit: "ohm",
             frequency: 0.0,
@@ -193,6 +199,7 @@ fn oxygen_stage() -> StageReport {
             actual: Some(-999_950.0),
             error: Some(-0.00005),
         }],
+        worked: None,
         local: None,
         pins: Vec::new(),
         reach: None,
@@ -208,6 +215,7 @@ fn unknown_stage() -> StageReport {
         group: None,
         output: "N012".to_owned(),
         transfers: vec![TransferReport {
+            adjusts: None,
             input: "N010".to_owned(),
             unit: "V/V",
             frequency: 0.0,
@@ -215,6 +223,7 @@ fn unknown_stage() -> StageReport {
             actual: None,
             error: None,
         }],
+        worked: None,
         local: None,
         pins: Vec::new(),
         reach: None,

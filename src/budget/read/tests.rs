@@ -1,3 +1,5 @@
+//! Budgets read whole, and what is wrong in them.
+
 use super::{date, read};
 use crate::budget::{Budget, Gain, Toleranced};
 use crate::device::{Pin, Technology};

@@ -1,3 +1,5 @@
+//! Profiles and what is assumed, read whole, and what is wrong in them.
+
 use super::{read_assumed, read_profiles};
 use crate::device::{Assumed, Derating, Entry, Key, LoadTo, Pin, Profile, Technology};
 use crate::diagnostic::Diagnostic;

@@ -1,3 +1,5 @@
+//! Quantities, ranges and tolerances as people write them.
+
 use super::super::{percent, show};
 use super::{ANY, parse, parse_any, parse_gain, parse_share};
 use crate::quantity::Unit;

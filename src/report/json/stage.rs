@@ -28,6 +28,9 @@ struct Transfer<'a> {
     ideal: f64,
     actual: Option<f64>,
     error: Option<f64>,
+    /// Least and greatest over the travel of adjustable parts.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    adjusts: Option<[f64; 2]>,
     #[serde(skip_serializing_if = "Option::is_none")]
     reason: Option<String>,
 }
@@ -63,6 +66,9 @@ struct Figure<'a> {
     status: &'static str,
     reason: Option<String>,
     data: Rank,
+    /// Unit of the ledger's effects, where it isn't the figure's.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    ledger_unit: Option<&'static str>,
     ledger: Vec<Line<'a>>,
 }
 
@@ -99,13 +105,22 @@ impl<'a> Stage<'a> {
 impl<'a> Transfer<'a> {
     /// `skipped` is why the op amp wasn't analysed, where it wasn't.
     fn new(transfer: &'a TransferReport, skipped: Option<&str>) -> Transfer<'a> {
-        let TransferReport { input, unit, frequency, ideal, actual, error } = transfer;
+        let TransferReport { input, unit, frequency, ideal, actual, error, adjusts } = transfer;
         let reason = match (actual, error) {
             (None, _) => skipped.map(str::to_owned),
             (Some(_), None) if *ideal == 0.0 => Some("the ideal transfer is 0".to_owned()),
             _ => not_finite(&[("ideal", Some(*ideal)), ("actual", *actual), ("error", *error)]),
         };
-        Transfer { input, unit, frequency: *frequency, ideal: *ideal, actual: *actual, error: *error, reason }
+        Transfer {
+            input,
+            unit,
+            frequency: *frequency,
+            ideal: *ideal,
+            actual: *actual,
+            error: *error,
+            adjusts: adjusts.map(|(low, high)| [low, high]),
+            reason,
+        }
     }
 }
 
@@ -144,6 +159,7 @@ impl<'a> Figure<'a> {
             status: figure.status.word(),
             reason: figure.reason.clone().or_else(|| not_finite(&numbers)),
             data: figure.data,
+            ledger_unit: (figure.ledger_unit != figure.unit).then(|| unit(figure.ledger_unit)),
             ledger: figure.ledger.iter().map(Line::new).collect(),
         }
     }

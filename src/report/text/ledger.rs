@@ -7,10 +7,13 @@ use super::table::Table;
 use crate::device::Rank;
 use crate::figure::Bad;
 use crate::quantity::{Unit, percent, show};
-use crate::report::{FigureReport, LedgerLine, PinReport, StageReport, TransferReport};
+use crate::report::{CAUTION_LINE, FigureReport, LedgerLine, PinReport, StageReport, TransferReport};
 
 /// Columns of a bar that stands for a share of one.
-const BAR: usize = 20;
+const BAR: usize = 10;
+
+/// Lines with a smaller share stand together in one.
+const SMALL: f64 = 0.0005;
 
 /// Blocks of one to seven eighths of a column.
 const EIGHTHS: [&str; 8] = ["", "▏", "▎", "▍", "▌", "▋", "▊", "▉"];
@@ -27,9 +30,16 @@ pub fn ledger_text(stage: &StageReport, style: Style) -> String {
         write_transfers(&mut paper, "transfers with the block's other outputs held", local);
     }
     write_pins(&mut paper, &stage.pins);
+    if let Some(worked) = &stage.worked {
+        paper.blank();
+        paper.paragraph("ideal gain by hand: ", "  ", worked);
+    }
     for figure in &stage.figures {
         write_figure(&mut paper, figure);
     }
+    write_origins(&mut paper, stage);
+    paper.blank();
+    paper.paragraph("", "", CAUTION_LINE);
     paper.done()
 }
 
@@ -96,8 +106,25 @@ fn write_figure(paper: &mut Paper, figure: &FigureReport) {
         numbers += &format!(", return ratio {} at DC", if sign < 0.0 { "negative" } else { "positive" });
     }
     paper.paragraph("  ", "  ", &numbers);
-    if let Some(reason) = &figure.reason {
+    if let Some(reason) = figure.reason.as_ref().filter(|_| figure.limit.is_none() && figure.worst.is_none())
+    {
         paper.paragraph("  reason: ", "          ", reason);
+    }
+    if let Some(worked) = &figure.worked {
+        paper.paragraph("  by hand: ", "           ", worked);
+    }
+    if let Some(trials) = &figure.trials {
+        let number = |at: f64| value(at, figure.ledger_unit, figure.bad);
+        let words = format!(
+            "{} random trials: 2.5 % below {}, half below {}, 97.5 % below {}; all within {} .. {}",
+            trials.trials,
+            number(trials.low),
+            number(trials.median),
+            number(trials.high),
+            number(trials.span.0),
+            number(trials.span.1),
+        );
+        paper.paragraph("  ", "  ", &words);
     }
     write_ledger(paper, figure);
 }
@@ -119,29 +146,77 @@ fn write_ledger(paper: &mut Paper, figure: &FigureReport) {
     if figure.ledger.is_empty() {
         return;
     }
-    let mut lines: Vec<&LedgerLine> = figure.ledger.iter().collect();
+    let (mut lines, small): (Vec<&LedgerLine>, Vec<&LedgerLine>) =
+        figure.ledger.iter().partition(|line| line.share.is_none_or(|share| SMALL <= share));
     let size = |line: &LedgerLine| line.share.map_or(f64::NEG_INFINITY, |share| -share);
     lines.sort_by(|left, right| size(left).total_cmp(&size(right)));
-    let mut table = Table::new([">effect", ">share", "", "item", ""]);
+    let mut table = Table::new([">effect", ">share", "", "item", ">nominal", ">at worst", ""]);
     for line in lines {
+        let shown = |pick: fn((f64, f64)) -> f64| {
+            line.value
+                .map_or_else(String::new, |(nominal, worst, unit)| fine_value(pick((nominal, worst)), unit))
+        };
         table.row([
-            value(line.effect, figure.unit, figure.bad),
+            value(line.effect, figure.ledger_unit, figure.bad),
             line.share.map_or_else(String::new, percent_of_all),
             line.share.map_or_else(String::new, bar),
             line.item.clone(),
+            shown(|(nominal, _)| nominal),
+            shown(|(_, worst)| worst),
             if line.against { "against the worst".to_owned() } else { String::new() },
         ]);
     }
+    if !small.is_empty() {
+        let rest: f64 = small.iter().map(|line| line.effect).sum();
+        let words = format!("{} more, each below {}", small.len(), percent(SMALL));
+        let empty = String::new;
+        table.row([
+            value(rest, figure.ledger_unit, figure.bad),
+            empty(),
+            empty(),
+            words,
+            empty(),
+            empty(),
+            empty(),
+        ]);
+    }
     if let Some((total, words)) = total(figure) {
-        let total = value(total, figure.unit, figure.bad);
-        table.row([total, String::new(), String::new(), words.to_owned(), String::new()]);
+        let total = value(total, figure.ledger_unit, figure.bad);
+        let empty = String::new;
+        table.row([total, empty(), empty(), words.to_owned(), empty(), empty(), empty()]);
     }
     table.write(paper, 2);
 }
 
+/// A value with its unit; what is unlimited or unknown is said so.
+fn fine_value(value: f64, unit: Unit) -> String {
+    if value.is_finite() { show(value, unit) } else { "unlimited".to_owned() }
+}
+
+/// Where every value comes from, once.
+fn write_origins(paper: &mut Paper, stage: &StageReport) {
+    let mut seen: Vec<(&str, &str)> = Vec::new();
+    for line in stage.figures.iter().flat_map(|figure| &figure.ledger) {
+        if let Some(origin) = &line.origin
+            && !seen.contains(&(line.item.as_str(), origin.as_str()))
+        {
+            seen.push((&line.item, origin));
+        }
+    }
+    if seen.is_empty() {
+        return;
+    }
+    seen.sort_unstable();
+    paper.blank();
+    paper.line("where the values come from");
+    for (item, origin) in seen {
+        paper.paragraph(&format!("  {item}: "), "    ", origin);
+    }
+}
+
 /// What the lines add up to, where that is the worst case: plainly, or as squares.
 fn total(figure: &FigureReport) -> Option<(f64, &'static str)> {
-    let worst = figure.worst?;
+    let worst = figure.worst.filter(|_| figure.unit == figure.ledger_unit)?;
     let sum: f64 = figure.ledger.iter().map(|line| line.effect).sum();
     let root = figure.ledger.iter().map(|line| line.effect * line.effect).sum::<f64>().sqrt();
     let agrees = |total: f64| (total - worst).abs() <= AGREES * worst.abs();

@@ -21,7 +21,7 @@ pub(super) fn write(paper: &mut Paper, stages: &[StageReport]) {
             stage.output.clone(),
             ideal,
             actual,
-            worst_figure(&stage.figures),
+            worst_figure(stage),
         ]);
     }
     paper.blank();
@@ -37,14 +37,15 @@ pub(super) fn main_transfer(stage: &StageReport) -> (String, String) {
 
 /// The heaviest status and the figures that have it: `broken: gain-error and 2 more`. Where no signal
 /// enters, as in the buffer of a reference, a gain isn't unknown but absent.
-fn worst_figure(figures: &[FigureReport]) -> String {
+fn worst_figure(stage: &StageReport) -> String {
     let absent = |figure: &&FigureReport| figure.reason.as_deref() == Some("no signal port");
-    let figures: Vec<&FigureReport> = figures.iter().filter(|figure| !absent(figure)).collect();
+    let figures: Vec<&FigureReport> = stage.figures.iter().filter(|figure| !absent(figure)).collect();
     let Some(worst) = figures.iter().map(|figure| figure.status).max() else {
         return "not computed".to_owned();
     };
     if worst == Status::Within {
-        return worst.word().to_owned();
+        let silent = stage.transfers.is_empty() && figures.len() < stage.figures.len();
+        return if silent { "no signal".to_owned() } else { worst.word().to_owned() };
     }
     let mut those = figures.iter().filter(|figure| figure.status == worst);
     let first = those.next().map_or("", |figure| figure.slug);

@@ -1,3 +1,5 @@
+//! Rule packs read whole, and what is wrong in them.
+
 use super::read_pack;
 use crate::device::Technology;
 use crate::diagnostic::{Diagnostic, Severity};
@@ -5,7 +7,8 @@ use crate::quantity::Unit;
 use crate::rule::{Limit, Rule};
 use crate::source::Sources;
 
-const KNOWN: [(&str, Option<Unit>); 18] = [
+const KNOWN: [(&str, Option<Unit>); 19] = [
+    ("lost-zero", None),
     ("gain-error", Some(Unit::One)),
     ("loop-gain", Some(Unit::One)),
     ("feedback-resistance", Some(Unit::Ohm)),
