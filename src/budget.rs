@@ -47,6 +47,8 @@ pub struct Budget {
     pub stages: Vec<StageBudget>,
     /// Findings that someone answers for.
     pub waivers: Vec<Waiver>,
+    /// What op amps of unknown devices are built of, where the command line says; no file does.
+    pub assumed_technology: Option<Technology>,
 }
 
 /// Default tolerances, relative; drift per kelvin.

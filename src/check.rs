@@ -6,8 +6,12 @@ mod cover;
 mod embedded;
 mod files;
 mod names;
+mod reference;
 mod stages;
 
+pub use reference::{Reference, reference};
+
+use crate::device::Technology;
 use crate::diagnostic::Severity;
 use crate::report::{BoardReport, Report, Verdict};
 use crate::source::Sources;
@@ -24,6 +28,8 @@ pub struct Options {
     pub devices: Vec<PathBuf>,
     /// Further rule packs.
     pub rules: Vec<PathBuf>,
+    /// What op amps of unknown devices are taken to be built of.
+    pub assume_technology: Option<Technology>,
     /// Unwaived findings of this severity or above fail; an error where left out.
     pub fail_on: Option<Severity>,
     /// Whether every value's origin and formula is told.

@@ -1,6 +1,11 @@
 //! The command line: what can be asked, and how answers are printed.
 
+mod devices;
+mod explain;
+mod stages;
+
 use crate::check::{self, Options};
+use crate::device::Technology;
 use crate::diagnostic::Severity;
 use crate::report::{self, Style};
 use clap::{Parser, Subcommand, ValueEnum};
@@ -21,6 +26,12 @@ enum Command {
     Check(Check),
     /// Show one stage in full: transfers, pin voltages, and each figure item by item.
     Ledger(Ledger),
+    /// Show what was found: stages with their topology and transfers, what each can do, what was left out.
+    Stages(stages::Stages),
+    /// Explain a figure, a fact or a kind of fault: physics, formula, source, cures, the limits in force.
+    Explain(explain::Explain),
+    /// List the device profiles at hand, or show one with all its figures.
+    Devices(devices::Devices),
 }
 
 /// What every command that reads a board takes.
@@ -35,6 +46,43 @@ struct Board {
     /// Further rule packs. Later entries win.
     #[arg(long, value_name = "FILE")]
     rules: Vec<PathBuf>,
+    /// Judge op amps of unknown devices by the bounds of a class; all that rests on them is assumed.
+    #[arg(long, value_enum, value_name = "CLASS")]
+    assume_technology: Option<Class>,
+}
+
+/// What an op amp is built of.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, ValueEnum)]
+enum Class {
+    /// Bipolar transistors at the input.
+    Bipolar,
+    /// Junction field-effect transistors at the input.
+    Jfet,
+    /// MOS transistors at the input.
+    Cmos,
+}
+
+impl Class {
+    fn technology(self) -> Technology {
+        match self {
+            Class::Bipolar => Technology::Bipolar,
+            Class::Jfet => Technology::Jfet,
+            Class::Cmos => Technology::Cmos,
+        }
+    }
+}
+
+impl Board {
+    /// The options of a run over such boards; paths and the rest are left to the command.
+    fn options(&self) -> Options {
+        Options {
+            budget: self.budget.clone(),
+            devices: self.devices.clone(),
+            rules: self.rules.clone(),
+            assume_technology: self.assume_technology.map(Class::technology),
+            ..Options::default()
+        }
+    }
 }
 
 #[derive(Debug, clap::Args)]
@@ -111,6 +159,9 @@ pub fn run() -> u8 {
     match Cli::parse().command {
         Command::Check(check) => run_check(check),
         Command::Ledger(ledger) => run_ledger(&ledger),
+        Command::Stages(asked) => stages::run(asked),
+        Command::Explain(asked) => explain::run(&asked),
+        Command::Devices(asked) => devices::run(&asked),
     }
 }
 
@@ -122,12 +173,9 @@ fn run_check(asked: Check) -> u8 {
     };
     let options = Options {
         paths: asked.paths,
-        budget: asked.board.budget,
-        devices: asked.board.devices,
-        rules: asked.board.rules,
         fail_on: Some(fail_on),
         complete: asked.complete,
-        ..Options::default()
+        ..asked.board.options()
     };
     if !asked.with.is_empty() {
         return run_trial(&options, &asked.with, asked.format);
@@ -144,12 +192,9 @@ fn run_check(asked: Check) -> u8 {
 fn run_ledger(asked: &Ledger) -> u8 {
     let options = Options {
         paths: vec![asked.netlist.clone()],
-        budget: asked.board.budget.clone(),
-        devices: asked.board.devices.clone(),
-        rules: asked.board.rules.clone(),
         detail: true,
         trials: asked.trials.unwrap_or(0).min(MOST_TRIALS),
-        ..Options::default()
+        ..asked.board.options()
     };
     let outcome = check::run(&options);
     complain(&outcome.unusable);

@@ -3,9 +3,11 @@
 mod catalogue;
 mod read;
 mod spread;
+mod standing;
 
 pub use read::{read_assumed, read_pins, read_profiles, technology};
 pub use spread::{Situation, Spread, bounds, spread};
+pub use standing::Standing;
 
 use crate::quantity::{Amps, Celsius, Farads, Ohms, Unit, Volts};
 use crate::source::Span;
@@ -33,6 +35,20 @@ pub enum Technology {
     Cmos,
 }
 
+impl Technology {
+    /// Every technology.
+    pub const ALL: [Technology; 3] = [Technology::Bipolar, Technology::Jfet, Technology::Cmos];
+
+    /// The word in files and reports.
+    pub fn word(self) -> &'static str {
+        match self {
+            Technology::Bipolar => "bipolar",
+            Technology::Jfet => "jfet",
+            Technology::Cmos => "cmos",
+        }
+    }
+}
+
 /// What a pin of an op amp does.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Hash)]
 pub enum Pin {
@@ -46,6 +62,23 @@ pub enum Pin {
     NegativeSupply,
     /// Output.
     Output,
+}
+
+impl Pin {
+    /// Every pin.
+    pub const ALL: [Pin; 5] =
+        [Pin::NonInverting, Pin::Inverting, Pin::PositiveSupply, Pin::NegativeSupply, Pin::Output];
+
+    /// The word in files and reports.
+    pub fn word(self) -> &'static str {
+        match self {
+            Pin::NonInverting => "non-inverting",
+            Pin::Inverting => "inverting",
+            Pin::PositiveSupply => "positive-supply",
+            Pin::NegativeSupply => "negative-supply",
+            Pin::Output => "output",
+        }
+    }
 }
 
 /// Declares the parameters of a profile: variant, the key in YAML, the unit, the doc.
@@ -150,6 +183,21 @@ pub enum LoadTo {
     Negative,
 }
 
+impl LoadTo {
+    /// Every end.
+    pub const ALL: [LoadTo; 4] = [LoadTo::Ground, LoadTo::Middle, LoadTo::Positive, LoadTo::Negative];
+
+    /// The word in files and reports.
+    pub fn word(self) -> &'static str {
+        match self {
+            LoadTo::Ground => "ground",
+            LoadTo::Middle => "middle",
+            LoadTo::Positive => "positive",
+            LoadTo::Negative => "negative",
+        }
+    }
+}
+
 /// Under what an entry holds; `None` where the document doesn't say.
 #[derive(Debug, Clone, Copy, PartialEq, Default)]
 pub struct Conditions {
@@ -191,6 +239,8 @@ pub struct Profile {
     pub aliases: Vec<String>,
     /// What it is built of.
     pub technology: Technology,
+    /// Whether it stands for a class of devices: then all its figures are assumed.
+    pub generic: bool,
     /// Op amps in one package.
     pub sections: u32,
     /// Order of the pins of one section's call; empty where the profile gives none.

@@ -1,5 +1,9 @@
 //! A fault as data: what was found, where, and what helps. Prints nothing.
 
+mod kinds;
+
+pub use kinds::KindDoc;
+
 use crate::source::Span;
 
 /// How much a finding weighs, lightest first.

@@ -27,6 +27,7 @@ mod quality;
 mod range;
 mod rated;
 mod ratio;
+mod reach;
 mod rejection;
 mod resistor_power;
 mod source_loading;
@@ -40,6 +41,7 @@ pub use doc::{Doc, Kind};
 pub use ledger::{Item, Line};
 pub use quality::Quality;
 pub use range::{Extreme, PinVoltages};
+pub use reach::{Edge, InputRange, Reach};
 pub use stage::{Input, LegsFrom, Main, Requirement, Review, Stage, Transfer, explain};
 pub use trials::Percentiles;
 

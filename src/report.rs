@@ -4,14 +4,18 @@ mod harmless;
 mod json;
 mod markdown;
 mod text;
+mod topic;
 
 pub(crate) use harmless::harmless;
 pub use json::json;
 pub use markdown::ledger_markdown;
-pub use text::{Style, ledger_text, text, trial_text};
+pub use text::{
+    Style, device_text, devices_text, ledger_text, stages_text, text, topic_text, topics_text, trial_text,
+};
+pub use topic::{Sort, Topic, TopicRule};
 
 use crate::device::Rank;
-use crate::figure::{Bad, Percentiles};
+use crate::figure::{Bad, InputRange, Percentiles};
 use crate::quantity::Unit;
 use crate::rule::{Finding, Status};
 
@@ -101,8 +105,25 @@ pub struct StageReport {
     pub local: Option<Vec<TransferReport>>,
     /// Voltages where the ranges drive the output lowest and highest.
     pub pins: Vec<PinReport>,
+    /// What it can do where nothing is declared; `None` where nobody asked.
+    pub reach: Option<ReachReport>,
     /// Figures in the order of their list.
     pub figures: Vec<FigureReport>,
+}
+
+/// What a stage can do where nothing is declared.
+#[derive(Debug, Clone, PartialEq)]
+pub struct ReachReport {
+    /// The main input, where there is one.
+    pub main: Option<String>,
+    /// `V` or `A`.
+    pub unit: Unit,
+    /// Its linear range, or why it can't be told.
+    pub input: Result<InputRange, String>,
+    /// Least load to ground in ohm, or why it can't be told.
+    pub load: Result<f64, String>,
+    /// How far the data can be trusted.
+    pub data: Rank,
 }
 
 /// A transfer from an input to the stage's output.

@@ -4,10 +4,12 @@ use crate::device::Technology;
 use crate::diagnostic::Severity;
 use crate::source::Span;
 
+mod fact;
 mod finding;
 mod judge;
 mod read;
 
+pub use fact::{FACTS, FactDoc};
 pub use finding::{Finding, Waived};
 pub use judge::{Judged, Subject, judge, shown};
 pub use read::read_pack;

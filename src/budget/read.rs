@@ -57,6 +57,7 @@ fn budget(reader: &mut Reader, root: &Node) -> Read<Budget> {
         devices: named(reader, &fields, "devices", device)?,
         stages: each(reader, &fields, "stages", stage)?,
         waivers: each(reader, &fields, "waivers", waiver)?,
+        assumed_technology: None,
     })
 }
 

@@ -47,6 +47,7 @@ pub(super) fn check(sources: &mut Sources, packs: &Packs, options: &Options, pat
         }
         report.budget = Some(name);
     }
+    budget.assumed_technology = options.assume_technology;
     report.name = budget.board.clone();
     let mut unknown_trials = Vec::new();
     if let Some(file) = files::open(sources, path, &shown, &mut report.findings) {

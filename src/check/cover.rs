@@ -1,12 +1,13 @@
 //! Coverage: how many op amps there are, and a finding for each that isn't analysed.
 
 use crate::block::{AmpId, Role, Unplaceable};
-use crate::circuit::{ElementId, NetId};
+use crate::circuit::{Circuit, ElementId, NetId};
 use crate::diagnostic::{Diagnostic, Label, Severity};
 use crate::figure::explain;
 use crate::report::{BoardReport, Coverage};
 use crate::rule::Finding;
 use crate::solve::{Board, Fault};
+use std::collections::BTreeMap;
 
 /// The rules under which an op amp without figures is a finding.
 pub(super) const RULES: [&str; 9] = [
@@ -29,6 +30,8 @@ struct Case {
     severity: Severity,
     reason: String,
     cure: Option<String>,
+    /// Model name of the unknown device that is behind it.
+    device: Option<String>,
     /// Whether it counts as skipped; else it is non-linear by intent.
     skipped: bool,
 }
@@ -46,6 +49,7 @@ pub(super) fn count(board: &Board, report: &mut BoardReport) {
         severity: Severity::Error,
         reason: unplaced.reason.clone(),
         cure: Some(unplaced.cure.clone()),
+        device: None,
         skipped: true,
     });
     cases.extend(unplaced);
@@ -59,26 +63,79 @@ pub(super) fn count(board: &Board, report: &mut BoardReport) {
         }
     }
     cases.sort_by_key(|case| case.element);
+    let mut devices: BTreeMap<String, Vec<(String, ElementId)>> = BTreeMap::new();
+    for (model, case) in cases.iter().filter_map(|case| Some((case.device.as_ref()?, case))) {
+        devices.entry(model.to_ascii_lowercase()).or_default().push((case.name.clone(), case.element));
+    }
     for case in cases {
-        let span = circuit.element(case.element).span;
-        let message = match case.skipped {
-            true => format!("{} is not analysed: {}", case.name, case.reason),
-            false => format!("{} has no linear figures: {}", case.name, case.reason),
-        };
-        let fault = Diagnostic {
-            kind: case.rule,
-            severity: case.severity,
-            message,
-            labels: span.map(|span| Label { span, text: String::new() }).into_iter().collect(),
-            help: case.cure,
-        };
-        report.findings.push(Finding { stage: Some(case.name.clone()), ..Finding::from(fault) });
+        report.findings.extend(match &case.device {
+            // One cause, one finding: the first stage of a device speaks for all.
+            Some(model) => {
+                devices.remove(&model.to_ascii_lowercase()).map(|all| unknown_device(circuit, model, &all))
+            }
+            None => Some(finding(circuit, &case)),
+        });
         match case.skipped {
             true => coverage.skipped.push((case.name, case.reason)),
             false => coverage.non_linear += 1,
         }
     }
     report.coverage = coverage;
+}
+
+fn finding(circuit: &Circuit, case: &Case) -> Finding {
+    let span = circuit.element(case.element).span;
+    let message = match case.skipped {
+        true => format!("{} is not analysed: {}", case.name, case.reason),
+        false => format!("{} has no linear figures: {}", case.name, case.reason),
+    };
+    let fault = Diagnostic {
+        kind: case.rule,
+        severity: case.severity,
+        message,
+        labels: span.map(|span| Label { span, text: String::new() }).into_iter().collect(),
+        help: case.cure.clone(),
+    };
+    Finding { stage: Some(case.name.clone()), ..Finding::from(fault) }
+}
+
+/// Figures that decide most of what is judged.
+const DECISIVE: &str = "open-loop-gain, bias-current, offset-voltage, common-mode-rejection, supply-rejection, \
+    swing-below-positive, swing-above-negative, input-below-positive, input-above-negative, output-current";
+
+/// A device that no profile knows, with the stages that it leaves without figures.
+fn unknown_device(circuit: &Circuit, model: &str, stages: &[(String, ElementId)]) -> Finding {
+    const SHOWN: usize = 4;
+    let shown = &stages[..stages.len().min(SHOWN)];
+    let names: Vec<&str> = shown.iter().map(|(name, _)| name.as_str()).collect();
+    let more = stages.len() - names.len();
+    let more = if 0 < more { format!(" and {more} more") } else { String::new() };
+    let key = yaml_key(model);
+    let fault = Diagnostic {
+        kind: "unknown-device",
+        severity: Severity::Warning,
+        message: format!(
+            "{model} is an unknown device: of {}{more} nothing but structure and ideal transfers can be told",
+            names.join(", ")
+        ),
+        labels: shown
+            .iter()
+            .filter_map(|(_, element)| circuit.element(*element).span)
+            .map(|span| Label { span, text: String::new() })
+            .collect(),
+        help: Some(format!(
+            "budget: `devices: {{ {key}: {{ technology: bipolar }} }}` (or jfet, cmos) judges it by the bounds of that class; \
+            `devices: {{ {key}: {{ profile: NAME }} }}` by a profile, one of your own under --devices with {DECISIVE}"
+        )),
+    };
+    Finding { stage: names.first().map(|name| (*name).to_owned()), ..Finding::from(fault) }
+}
+
+/// A name as a key of a YAML mapping, in quotes where it needs them.
+fn yaml_key(name: &str) -> String {
+    let plain = name.starts_with(|first: char| first.is_ascii_alphabetic())
+        && name.bytes().all(|byte| byte.is_ascii_alphanumeric() || matches!(byte, b'_' | b'-' | b'.'));
+    if plain { name.to_owned() } else { format!("\"{}\"", name.replace('\\', "\\\\").replace('"', "\\\"")) }
 }
 
 /// An op amp whose output is no place for one.
@@ -95,7 +152,7 @@ fn misplaced(board: &Board, op_amp: u32, why: Unplaceable) -> Case {
         }
     };
     let (element, name) = (part.element, part.name.clone());
-    Case { element, name, rule, severity: Severity::Error, reason, cure: None, skipped: true }
+    Case { element, name, rule, severity: Severity::Error, reason, cure: None, device: None, skipped: true }
 }
 
 /// An op amp whose block has no figures.
@@ -113,17 +170,13 @@ fn unsolved(board: &Board, amp: AmpId, op_amp: u32, fault: &Fault) -> Case {
         }
         _ => ("not-analysed", Severity::Warning, true),
     };
-    let cure = match fault {
-        Fault::UnknownDevice(at) => {
-            let model = &board.circuit.op_amps[*at as usize].model;
-            Some(format!(
-                "budget: devices: {{ {model}: {{ profile: ... }} }}, or give a profile with --devices"
-            ))
-        }
+    let device = match fault {
+        Fault::UnknownDevice(at) => Some(board.circuit.op_amps[*at as usize].model.clone()),
         _ => None,
     };
     let reason = explain(board.circuit, board.layout, fault);
-    Case { element: part.element, name: part.name.clone(), rule, severity, reason, cure, skipped }
+    let (element, name) = (part.element, part.name.clone());
+    Case { element, name, rule, severity, reason, cure: None, device, skipped }
 }
 
 /// Whether an output reaches the inputs of other amplifiers.

@@ -6,11 +6,12 @@ use crate::device::Rank;
 use crate::diagnostic::{Diagnostic, Label, Severity};
 use crate::figure::{Bad, Figure, Kind, LegsFrom, Main, PinVoltages, Requirement, Review, Stage, Transfer};
 use crate::quantity::{Unit, percent};
-use crate::report::{FigureReport, LedgerLine, PinReport, StageReport, TransferReport};
+use crate::report::{FigureReport, LedgerLine, PinReport, ReachReport, StageReport, TransferReport};
 use crate::rule::{Finding, Judged, Rule, Status, Subject, judge};
 use crate::solve::{Board, PrimaryKind};
 use crate::source::{Sources, matches};
 use rayon::prelude::*;
+use std::collections::BTreeSet;
 
 /// A stage judged.
 pub(super) struct Judgement {
@@ -81,6 +82,7 @@ fn one(
         _ => LegsFrom::Pair,
     };
     let review = stage.review(&requirement);
+    let known = stage.profile().filter(|profile| !profile.generic);
     let device = stage.profile().map_or(part.model.as_str(), |profile| profile.name.as_str());
     let stated: Vec<(String, f64, bool)> = asked
         .iter()
@@ -113,7 +115,7 @@ fn one(
     }
     let report = StageReport {
         id: part.name.clone(),
-        device: device.to_owned(),
+        device: known.map_or(part.model.as_str(), |profile| profile.name.as_str()).to_owned(),
         topology: topology.word().to_owned(),
         group,
         output: stage.board.circuit.net(part.output).name.clone(),
@@ -121,6 +123,7 @@ fn one(
         worked: detail.sources.and_then(|_| stage.worked_transfer(&review, topology)),
         local: stage.local().map(|local| transfers(&local, None)),
         pins: review.pins.iter().map(pin).collect(),
+        reach: Some(reach(&review)),
         figures,
     };
     Judgement { report, findings, op_amp: stage.op_amp }
@@ -152,6 +155,18 @@ fn transfers(found: &[Transfer], main: Option<usize>) -> Vec<TransferReport> {
         error: transfer.actual.filter(|_| transfer.ideal != 0.0).map(|actual| actual / transfer.ideal - 1.0),
     };
     order.map(|at| report(&found[at])).collect()
+}
+
+fn reach(review: &Review) -> ReachReport {
+    let main = review.main.map(|at| &review.transfers[at].input);
+    let current = main.is_some_and(|input| matches!(input.from, Main::Current(_)));
+    ReachReport {
+        main: main.map(|input| input.name.clone()),
+        unit: if current { Unit::Ampere } else { Unit::Volt },
+        input: review.reach.input.clone(),
+        load: review.reach.load.clone(),
+        data: review.reach.rank,
+    }
 }
 
 fn pin(pins: &PinVoltages) -> PinReport {
@@ -272,10 +287,27 @@ fn declaration(reason: &str) -> Option<String> {
         .then(|| "give the figure in a profile of your own, with --devices".to_owned())
 }
 
+/// Devices of which only the class is known, one sentence each.
+fn classes(board: &Board) -> Vec<String> {
+    let mut said: Vec<String> = Vec::new();
+    let mut models: BTreeSet<String> = BTreeSet::new();
+    for op_amp in &board.circuit.op_amps {
+        let Some(profile) = op_amp.profile.map(|at| &board.catalogue.profiles[at]) else { continue };
+        if profile.generic && models.insert(op_amp.model.to_ascii_lowercase()) {
+            let technology = profile.technology.word();
+            said.push(format!(
+                "{} is a {technology} op amp within the bounds of {}",
+                op_amp.model, profile.name
+            ));
+        }
+    }
+    said
+}
+
 /// What was assumed because neither netlist nor budget says it, one sentence each.
 pub(super) fn assumed(board: &Board, budget: &Budget) -> Vec<String> {
     let assumed = &board.catalogue.assumed;
-    let mut said = Vec::new();
+    let mut said = classes(board);
     let resistors = board.models.iter().flat_map(|model| &model.parameters).any(|parameter| {
         matches!(parameter.what, crate::solve::What::Resistors(_)) && parameter.rank == Rank::Assumed
     });

@@ -30,7 +30,7 @@ pub fn build(
     faults.extend(trace::sources(&mut circuit));
     trace::currents(&mut circuit);
     trace::declared(&mut circuit, declared);
-    faults.extend(unknown::settle(sources, &mut circuit, &undefined));
+    faults.extend(unknown::settle(sources, &mut circuit, &undefined, (catalogue, budget)));
     circuit.connect();
     trace::names(&mut circuit);
     (circuit, faults)

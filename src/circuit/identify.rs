@@ -19,6 +19,22 @@ pub(super) struct Identity {
     pub pins: Vec<Pin>,
 }
 
+impl Identity {
+    /// An op amp of a profile, if there is one; else of a stated technology, or of that which the run
+    /// assumes, whose generic profile then serves. The pins are left to the caller.
+    pub(super) fn of(
+        catalogue: &Catalogue,
+        budget: &Budget,
+        profile: Option<usize>,
+        stated: Option<Technology>,
+    ) -> Identity {
+        let of_profile = profile.map(|at| catalogue.profiles[at].technology);
+        let technology = stated.or(of_profile).or(budget.assumed_technology);
+        let profile = profile.or_else(|| technology.and_then(|technology| catalogue.generic(technology)));
+        Identity { profile, technology, pins: Vec::new() }
+    }
+}
+
 /// How many pins an order has that doesn't fit the nodes of its call.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub(super) struct Misfit(pub usize);
@@ -56,9 +72,8 @@ pub(super) fn identify(
             .unwrap_or(USUAL.into())
     });
     let pins = fit(order, nodes).map_err(Misfit)?;
-    let technology =
-        declared.and_then(|choice| choice.technology).or(profile.map(|at| catalogue.profiles[at].technology));
-    Ok(Some(Identity { profile, technology, pins }))
+    let stated = declared.and_then(|choice| choice.technology);
+    Ok(Some(Identity { pins, ..Identity::of(catalogue, budget, profile, stated) }))
 }
 
 /// A call with three nodes leaves out the supply pins; any other count must be the order's own.

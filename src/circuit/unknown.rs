@@ -1,7 +1,10 @@
 //! Calls that nothing defines and no profile knows: op amps, as far as the nets on their pins tell, and others.
 
+use crate::budget::Budget;
+use crate::circuit::identify::Identity;
 use crate::circuit::values::{stated_voltage, supply_like};
 use crate::circuit::{Circuit, ElementId, ElementKind, NetId, OpAmp, Tie};
+use crate::device::Catalogue;
 use crate::diagnostic::{Diagnostic, Label, Severity};
 use crate::source::{Sources, Span, quote};
 use rustc_hash::FxHashMap;
@@ -11,7 +14,13 @@ pub(super) type Undefined = (ElementId, Span);
 
 /// Takes a call for an op amp of an unknown device where five pins in the usual order have a supply on the third
 /// and fourth and no other; says of every other name, once, that it isn't modelled.
-pub(super) fn settle(sources: &Sources, circuit: &mut Circuit, undefined: &[Undefined]) -> Vec<Diagnostic> {
+pub(super) fn settle(
+    sources: &Sources,
+    circuit: &mut Circuit,
+    undefined: &[Undefined],
+    (catalogue, budget): (&Catalogue, &Budget),
+) -> Vec<Diagnostic> {
+    let identity = Identity::of(catalogue, budget, None, None);
     let mut supply = vec![false; circuit.nets.len()];
     for op_amp in &circuit.op_amps {
         op_amp.positive.iter().chain(&op_amp.negative).for_each(|net| supply[net.0 as usize] = true);
@@ -21,7 +30,7 @@ pub(super) fn settle(sources: &Sources, circuit: &mut Circuit, undefined: &[Unde
     for (element, model) in undefined {
         let name = sources.text(*model);
         if is_op_amp(circuit, &supply, &circuit.element(*element).nets) {
-            take(circuit, *element, name);
+            take(circuit, *element, name, &identity);
             continue;
         }
         let at = *index.entry(name.to_ascii_lowercase()).or_insert_with(|| {
@@ -67,14 +76,14 @@ fn is_supply(circuit: &Circuit, supply: &[bool], net: NetId) -> bool {
     facts.ground || tied || supply[net.0 as usize]
 }
 
-fn take(circuit: &mut Circuit, element: ElementId, model: &str) {
+fn take(circuit: &mut Circuit, element: ElementId, model: &str, identity: &Identity) {
     let own = circuit.element(element);
     let op_amp = OpAmp {
         element,
         name: own.name.clone(),
         model: model.to_owned(),
-        profile: None,
-        technology: None,
+        profile: identity.profile,
+        technology: identity.technology,
         non_inverting: own.nets[0],
         inverting: own.nets[1],
         positive: Some(own.nets[2]),

@@ -1,6 +1,6 @@
 //! Finding the profile that a model name means.
 
-use crate::device::{Catalogue, Profile};
+use crate::device::{Catalogue, Profile, Technology};
 use crate::source::matches;
 
 impl Catalogue {
@@ -11,6 +11,11 @@ impl Catalogue {
         let by = |test: &dyn Fn(&Profile) -> bool| self.profiles.iter().rposition(test);
         by(&|profile| names(profile).any(|name| name.eq_ignore_ascii_case(bare)))
             .or_else(|| by(&|profile| names(profile).any(|name| matches(name, bare))))
+    }
+
+    /// The profile that stands for all devices of a technology of which nothing else is known.
+    pub fn generic(&self, technology: Technology) -> Option<usize> {
+        self.named(&format!("generic-{}", technology.word())).filter(|at| self.profiles[*at].generic)
     }
 
     /// The profile of that very name.

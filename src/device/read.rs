@@ -30,19 +30,11 @@ pub fn read_profiles(sources: &Sources, file: FileId) -> (Vec<Profile>, Vec<Diag
 /// # Errors
 /// The text names none.
 pub fn technology(text: &str) -> Result<Technology, QuantityFault> {
-    let words = [("bipolar", Technology::Bipolar), ("jfet", Technology::Jfet), ("cmos", Technology::Cmos)];
-    choice(text, "a technology", &words)
+    choice(text, "a technology", &Technology::ALL.map(|technology| (technology.word(), technology)))
 }
 
 fn pin(text: &str) -> Result<Pin, QuantityFault> {
-    let words = [
-        ("non-inverting", Pin::NonInverting),
-        ("inverting", Pin::Inverting),
-        ("positive-supply", Pin::PositiveSupply),
-        ("negative-supply", Pin::NegativeSupply),
-        ("output", Pin::Output),
-    ];
-    choice(text, "a pin", &words)
+    choice(text, "a pin", &Pin::ALL.map(|pin| (pin.word(), pin)))
 }
 
 fn devices(reader: &mut Reader, root: &Node) -> Read<Vec<Profile>> {
@@ -62,7 +54,8 @@ fn devices(reader: &mut Reader, root: &Node) -> Read<Vec<Profile>> {
 }
 
 fn profile(reader: &mut Reader, node: &Node) -> Read<Option<Profile>> {
-    let keys = ["device", "aliases", "technology", "sections", "pins", "source", "notes", "parameters"];
+    let keys =
+        ["device", "aliases", "technology", "generic", "sections", "pins", "source", "notes", "parameters"];
     let fields = reader.fields(node, "a device", &keys)?;
     for key in ["device", "technology", "source", "parameters"] {
         reader.need(&fields, key);
@@ -70,6 +63,9 @@ fn profile(reader: &mut Reader, node: &Node) -> Read<Option<Profile>> {
     let name = reader.name(&fields, "device")?;
     let aliases = reader.names(&fields, "aliases")?.into_iter().map(|alias| alias.text).collect();
     let technology = reader.value(&fields, "technology", technology)?;
+    let truth = [("true", true), ("false", false)];
+    let generic =
+        reader.value(&fields, "generic", |text| choice(text, "a truth value", &truth))?.unwrap_or(false);
     let sections = reader.value(&fields, "sections", sections)?.unwrap_or(1);
     let pins = read_pins(reader, &fields)?.unwrap_or_default();
     let source = reader.text(&fields, "source")?;
@@ -80,6 +76,7 @@ fn profile(reader: &mut Reader, node: &Node) -> Read<Option<Profile>> {
         name: name.text,
         aliases,
         technology,
+        generic,
         sections,
         pins,
         source,
@@ -225,12 +222,7 @@ fn conditions(reader: &mut Reader, fields: &Fields<'_>) -> Read<Conditions> {
     let Some(node) = fields.get("at") else { return Ok(Conditions::default()) };
     let keys = ["load", "load-to", "sourcing", "sinking", "supply", "temperature"];
     let fields = reader.fields(node, "`at`", &keys)?;
-    let ends = [
-        ("ground", LoadTo::Ground),
-        ("middle", LoadTo::Middle),
-        ("positive", LoadTo::Positive),
-        ("negative", LoadTo::Negative),
-    ];
+    let ends = LoadTo::ALL.map(|end| (end.word(), end));
     Ok(Conditions {
         load: reader.value(&fields, "load", |text| positive(text, Unit::Ohm))?.map(Ohms),
         load_to: reader.value(&fields, "load-to", |text| choice(text, "where the load returns to", &ends))?,

@@ -84,10 +84,9 @@ pub fn spread<'p>(
     key: Key,
     situation: Situation,
 ) -> Option<Spread<'p>> {
-    let entries = profile.entries(key);
-    let low = pick(entries, |entry| entry.min, true, key, situation);
-    let high = pick(entries, |entry| entry.max, true, key, situation);
-    let typical = pick(entries, |entry| entry.typ, false, key, situation);
+    let low = pick(profile, |entry| entry.min, true, key, situation);
+    let high = pick(profile, |entry| entry.max, true, key, situation);
+    let typical = pick(profile, |entry| entry.typ, false, key, situation);
     let limit = match harm(key) {
         Harm::Low => low.as_ref(),
         Harm::High => high.as_ref(),
@@ -111,7 +110,7 @@ pub fn spread<'p>(
         high: high.max(nominal.value),
         rank,
         covered: chosen.covered,
-        source: chosen.entry.source.as_deref().unwrap_or(&profile.source),
+        source: profile.source_of(chosen.entry),
     })
 }
 
@@ -148,13 +147,13 @@ struct Found<'p> {
 }
 
 fn pick<'p>(
-    entries: &'p [Entry],
+    profile: &'p Profile,
     field: impl Fn(&Entry) -> Option<f64>,
     limit: bool,
     key: Key,
     situation: Situation,
 ) -> Option<Found<'p>> {
-    let candidates = entries.iter().filter_map(|entry| Some((entry, field(entry)?)));
+    let candidates = profile.entries(key).iter().filter_map(|entry| Some((entry, field(entry)?)));
     let worse = |value: f64| if harm(key) == Harm::Low { value } else { -value };
     let (entry, value) = candidates.min_by(|(a, x), (b, y)| {
         fit(a, limit, key, situation)
@@ -166,8 +165,7 @@ fn pick<'p>(
     })?;
     let covered = misses_temperature(entry, situation) == 0.0;
     let over = overload(entry, key, situation);
-    let unsure = entry.source.as_deref().is_some_and(|source| source == "memory" || source == "assumed");
-    let rank = if unsure || over.is_some() {
+    let rank = if profile.standing(entry).is_unsure() || over.is_some() {
         Rank::Assumed
     } else if covered {
         Rank::Guaranteed

@@ -10,10 +10,13 @@ use crate::solve::{Excitation, Solved};
 
 /// The rated output current, ampere.
 #[derive(Debug, Clone, Copy)]
-struct Rated {
-    nominal: f64,
-    low: f64,
-    rank: Rank,
+pub(super) struct Rated {
+    /// The rating; a typical value where only one is printed.
+    pub nominal: f64,
+    /// What is guaranteed.
+    pub low: f64,
+    /// How far it can be trusted.
+    pub rank: Rank,
 }
 
 /// A current over the rated one; the rated one is the last axis.
@@ -125,7 +128,8 @@ impl Stage<'_> {
     }
 }
 
-fn rated(stage: &Stage) -> Option<Rated> {
+/// The rated output current of a stage's device.
+pub(super) fn rated(stage: &Stage) -> Option<Rated> {
     if let Some(current) = stage.spread(Key::OutputCurrent, 0.0) {
         // A guaranteed current is the rating; a typical one alone is derated in the worst case.
         let nominal = if current.rank == Rank::Guaranteed { current.low } else { current.nominal };

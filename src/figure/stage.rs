@@ -5,10 +5,10 @@ use crate::circuit::{Circuit, NetId, OpAmp, SourceResistance};
 use crate::device::{Profile, Rank};
 use crate::figure::legs::Legs;
 use crate::figure::range::Drive;
-use crate::figure::{Figure, Kind, PinVoltages};
+use crate::figure::{Figure, Kind, PinVoltages, Reach};
 use crate::figure::{
     bias_error, common_error, feedback_resistance, gain_error, gain_spread, input_headroom, input_resistance,
-    loop_gain, offset_error, output_headroom, output_resistance, rated, rejection, resistor_power,
+    loop_gain, offset_error, output_headroom, output_resistance, rated, reach, rejection, resistor_power,
     source_loading,
 };
 use crate::solve::{Board, Device, Excitation, Fault, List, Model, Node, Solved, Values, Weights};
@@ -100,6 +100,8 @@ pub struct Review {
     pub pins: Vec<PinVoltages>,
     /// Declared output span, else the guaranteed swing, with whether it is declared.
     pub span: Option<(f64, bool)>,
+    /// What it can do where nothing is declared.
+    pub reach: Reach,
     /// Figures in the order of [`Kind::ALL`].
     pub figures: Vec<Figure>,
 }
@@ -212,12 +214,17 @@ impl<'b> Stage<'b> {
         if let Some(fault) = &self.model().fault {
             let reason = explain(self.board.circuit, self.board.layout, fault);
             let figures = Kind::ALL.iter().map(|kind| Figure::unknown(*kind, reason.clone())).collect();
-            return Review { transfers, main, pins: Vec::new(), span: None, figures };
+            let reach = Reach::unknown(reason);
+            return Review { transfers, main, pins: Vec::new(), span: None, reach, figures };
         }
         let drive = Drive::of(self);
         let figures =
             Kind::ALL.iter().map(|kind| self.figure(*kind, &transfers, main, &drive, requirement)).collect();
-        Review { transfers, main, pins: drive.pins(self), span: drive.span(self), figures }
+        let reach = match main.map(|at| &transfers[at]) {
+            Some(port) if !passes(port.ideal) => Reach::unknown("no transfer at DC"),
+            port => reach::compute(self, port.map(|port| port.input.from), &drive.rest),
+        };
+        Review { transfers, main, pins: drive.pins(self), span: drive.span(self), reach, figures }
     }
 
     fn figure(

@@ -3,17 +3,23 @@
 //! The verdicts come first, then the findings, the heaviest first, then what was found, what was left out
 //! and what was taken for granted.
 
+mod devices;
+mod explain;
 mod findings;
 mod ledger;
 mod number;
 mod paper;
 mod snippet;
+mod survey;
 mod stages;
 mod table;
 mod trial;
 mod verdict;
 
+pub use devices::{device_text, devices_text};
+pub use explain::{topic_text, topics_text};
 pub use ledger::ledger_text;
+pub use survey::stages_text;
 pub use trial::trial_text;
 
 use crate::report::{BoardReport, CAUTION_LINE, Report};

@@ -162,6 +162,7 @@ pub fn pressure_stage() -> StageReport {
         worked: None,
         local: None,
         pins: vec![pins("low", -0.02), pins("high", 0.02)],
+        reach: None,
         figures: vec![gain_error, loop_gain, loading, headroom, rejection],
     }
 }
@@ -201,6 +202,7 @@ fn oxygen_stage() -> StageReport {
         worked: None,
         local: None,
         pins: Vec::new(),
+        reach: None,
         figures: vec![gain_error],
     }
 }
@@ -224,6 +226,7 @@ fn unknown_stage() -> StageReport {
         worked: None,
         local: None,
         pins: Vec::new(),
+        reach: None,
         figures: Vec::new(),
     }
 }

@@ -78,6 +78,7 @@ fn profile(name: &str, model: OpAmp) -> Profile {
         name: name.to_owned(),
         aliases: Vec::new(),
         technology: Technology::Bipolar,
+        generic: false,
         sections: 1,
         pins: Vec::new(),
         source: "invented".to_owned(),

@@ -38,7 +38,8 @@ impl<'a> Expander<'a> {
                 Some(index) => match pins_by_name(&self.ports(index)).filter(|pins| pins.len() == nets.len())
                 {
                     Some(pins) => {
-                        let identity = Identity { profile: None, technology: None, pins };
+                        let unknown = Identity::of(self.catalogue, self.budget, None, None);
+                        let identity = Identity { pins, ..unknown };
                         self.op_amp(statement, name, text, &nets, identity);
                     }
                     None => {

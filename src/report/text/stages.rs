@@ -29,7 +29,7 @@ pub(super) fn write(paper: &mut Paper, stages: &[StageReport]) {
 }
 
 /// Gain or transresistance of the main transfer, of the twin and as it is.
-fn main_transfer(stage: &StageReport) -> (String, String) {
+pub(super) fn main_transfer(stage: &StageReport) -> (String, String) {
     let Some(main) = stage.transfers.first() else { return ("none".to_owned(), "none".to_owned()) };
     let actual = main.actual.map_or_else(|| "unknown".to_owned(), |actual| fine(actual, main.unit));
     (fine(main.ideal, main.unit), actual)
