@@ -210,5 +210,8 @@ fn an_example_in_full() {
 #[test]
 fn a_file_that_is_not_there_fails() {
     let (status, _, complaint) = gainsay(&["stages", "examples/none.cir"]);
-    assert_eq!((status, complaint.as_str()), (2, "gainsay: examples/none.cir: there is no such file\n"));
+    assert_eq!(
+        (status, complaint.as_str()),
+        (2, "gainsay: examples/none.cir: expected a text that can be read: there is no such file\n")
+    );
 }
