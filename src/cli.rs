@@ -249,7 +249,7 @@ fn run_trial(options: &Options, with: &[(String, f64)], format: Format) -> u8 {
 fn complain(lines: &[String]) {
     for line in lines {
         // An error stream that is closed has nobody to tell.
-        let _ = writeln!(std::io::stderr(), "gainsay: {line}");
+        let _ = writeln!(std::io::stderr(), "gainsay: {}", report::harmless(line));
     }
 }
 

@@ -6,6 +6,7 @@ mod markdown;
 mod text;
 mod topic;
 
+pub(crate) use harmless::harmless;
 pub use json::json;
 pub use markdown::ledger_markdown;
 pub use text::{

@@ -92,7 +92,11 @@ fn the_profile_and_the_rule_are_read() {
 
 #[test]
 fn the_output_is_what_is_printed() {
-    let outcome = run(&Options { paths: vec!["examples/dryer/drum-card.cir".into()], ..Options::default() });
+    let outcome = run(&Options {
+        paths: vec!["examples/dryer/drum-card.cir".into()],
+        detail: true,
+        ..Options::default()
+    });
     let style = Style { colour: false, width: 100, all: false };
     let report = text(&outcome.report, &outcome.sources, style);
     let printed = printed();
@@ -101,7 +105,7 @@ fn the_output_is_what_is_printed() {
     let stage = outcome.report.boards[0].stages.iter().find(|stage| stage.id == "XU7");
     let ledger = ledger_text(stage.expect("the example has this stage"), style);
     let lines: Vec<&str> =
-        printed.lines().skip_while(|line| !line.starts_with("bias-error:")).take(5).collect();
+        printed.lines().skip_while(|line| !line.starts_with("bias-error:")).take(6).collect();
     assert!(ledger.contains(&lines.join("\n")), "{lines:#?} is not in\n{ledger}");
 }
 

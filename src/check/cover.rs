@@ -9,6 +9,19 @@ use crate::rule::Finding;
 use crate::solve::{Board, Fault};
 use std::collections::BTreeMap;
 
+/// The rules under which an op amp without figures is a finding.
+pub(super) const RULES: [&str; 9] = [
+    "pin-map",
+    "shorted-output",
+    "joined-outputs",
+    "bias-path",
+    "feedback-polarity",
+    "unknown-device",
+    "dc-loop",
+    "open-loop",
+    "not-analysed",
+];
+
 /// An op amp without figures: what to say of it.
 struct Case {
     element: ElementId,

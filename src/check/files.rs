@@ -104,6 +104,8 @@ fn is_netlist(path: &Path) -> bool {
 pub(super) struct Includer {
     root: Option<PathBuf>,
     folders: BTreeMap<FileId, (PathBuf, String)>,
+    /// Files that have been read, by their true path: a file is itself under every name.
+    read: BTreeMap<PathBuf, FileId>,
 }
 
 impl Includer {
@@ -113,7 +115,8 @@ impl Includer {
         let root = folder.canonicalize().ok();
         let shown = Path::new(shown).parent().map(|folder| folder.display().to_string()).unwrap_or_default();
         let folders = root.iter().map(|root| (file, (root.clone(), shown.clone()))).collect();
-        Includer { root, folders }
+        let read = path.canonicalize().ok().into_iter().map(|path| (path, file)).collect();
+        Includer { root, folders, read }
     }
 
     /// The answer to an include of `name` from a file.
@@ -140,12 +143,16 @@ impl Includer {
         if !path.starts_with(root) {
             return Include::Refused("it lies outside the netlist's folder".to_owned());
         }
+        if let Some(file) = self.read.get(&path) {
+            return Include::Found(*file);
+        }
         let label = if shown.is_empty() { name } else { format!("{shown}/{name}") };
         match load(sources, &path, &label) {
             Ok(file) => {
                 let folder = path.parent().map(Path::to_owned).unwrap_or(folder);
                 let shown = Path::new(&label).parent().map(|folder| folder.display().to_string());
                 self.folders.insert(file, (folder, shown.unwrap_or_default()));
+                self.read.insert(path, file);
                 Include::Found(file)
             }
             Err(reason) => Include::Refused(reason),

@@ -1,6 +1,7 @@
 //! Names and limits in the budget that only a whole board can be asked about.
 
 use crate::budget::{Budget, Gain, Name, StageBudget, StatedLimit};
+use crate::check::cover;
 use crate::check::stages::Judgement;
 use crate::circuit::Circuit;
 use crate::diagnostic::{Diagnostic, Severity};
@@ -25,6 +26,14 @@ pub(super) fn misnamed(budget: &Budget, circuit: &Circuit, judged: &[Judgement])
         let nets = || circuit.nets.iter().map(|net| net.name.as_str());
         if net.text != "0" && !nets().any(|name| name.eq_ignore_ascii_case(&net.text)) {
             faults.push(unknown("the netlist has no net", net, nearest(&net.text, nets())));
+        }
+    }
+    for waiver in &budget.waivers {
+        let rules = || Kind::ALL.iter().map(|kind| kind.doc().slug).chain(cover::RULES);
+        if !rules().any(|rule| rule == waiver.rule.text) {
+            let near = nearest(&waiver.rule.text, rules());
+            let fault = unknown("no stage breaks a rule", &waiver.rule, near);
+            faults.push(Diagnostic { severity: Severity::Warning, ..fault });
         }
     }
     for stage in &budget.stages {

@@ -156,9 +156,10 @@ impl Stage<'_> {
         };
         Figure {
             kind,
-            nominal: Some(found.nominal),
-            worst: Some(found.worst),
-            rss: Some(rss),
+            // Adding nought takes the sign off a nought.
+            nominal: Some(found.nominal + 0.0),
+            worst: Some(found.worst + 0.0),
+            rss: Some(rss + 0.0),
             reason: None,
             sign: None,
             bound: false,

@@ -109,6 +109,13 @@ impl Quality {
                 1.0 / coordinate
             }
             Quality::CommonModeRejection | Quality::SupplyRejection => -20.0 * coordinate.abs().log10(),
+            // Currents and offsets are magnitudes; which way they act is the corner's matter.
+            Quality::BiasCurrent
+            | Quality::BiasPlus
+            | Quality::BiasMinus
+            | Quality::OffsetCurrent
+            | Quality::OffsetVoltage
+            | Quality::OffsetDrift => coordinate.abs(),
             _ => coordinate,
         }
     }

@@ -29,7 +29,7 @@ pub(super) fn push(out: &mut String, character: char) {
 }
 
 /// The text with everything escaped that could act.
-pub(super) fn harmless(text: &str) -> String {
+pub(crate) fn harmless(text: &str) -> String {
     let mut shown = String::with_capacity(text.len());
     text.chars().for_each(|character| push(&mut shown, character));
     shown

@@ -22,7 +22,7 @@ fn shapes() {
     fault("- a\n- b\n", "yaml-shape board.budget.yaml:1:1");
     fault("hello\n", "yaml-shape board.budget.yaml:1:1");
     fault("rails: 12 V\n", "yaml-shape board.budget.yaml:1:8");
-    fault("rails: {VCC: 5 V\nboard: x\n", "yaml-syntax board.budget.yaml:1:8");
+    fault("rails: {VCC: 5 V\nboard: x\n", "yaml-syntax board.budget.yaml:2:6");
     fault("rails: { VCC: 12 V }\nrails: { VEE: -12 V }\n", "duplicate-key board.budget.yaml:2:1");
 }
 
