@@ -212,14 +212,17 @@ pub fn adds_up(report: &Value) {
         let findings = board["findings"].as_array().expect("a board has findings");
         for skipped in skipped {
             let reason = skipped["reason"].as_str().expect("a reason is text");
-            // An unknown device is one finding, for all the op amps that it leaves without figures.
-            let device = reason.strip_prefix("unknown device ").and_then(|rest| rest.split(" (").next());
             let told = |finding: &&Value| {
-                let says =
-                    |words: &str| finding["message"].as_str().is_some_and(|message| message.contains(words));
-                match device {
-                    Some(device) => finding["rule"] == "unknown-device" && says(device),
-                    None => finding["stage"] == skipped["element"] && says(reason),
+                let message = finding["message"].as_str().unwrap_or("");
+                match (finding["rule"].as_str(), reason.strip_prefix("unknown device ")) {
+                    // One finding for all stages of a device.
+                    (Some("unknown-device"), Some(rest)) => {
+                        let model = rest.rsplit_once(" (").map_or(rest, |(model, _)| model);
+                        message
+                            .split_once(" is an unknown device")
+                            .is_some_and(|(of, _)| of.eq_ignore_ascii_case(model))
+                    }
+                    _ => finding["stage"] == skipped["element"] && message.contains(reason),
                 }
             };
             assert!(!reason.is_empty() && findings.iter().any(|finding| told(&finding)), "{skipped:#}");

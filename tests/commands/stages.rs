@@ -210,8 +210,7 @@ fn an_example_in_full() {
 #[test]
 fn a_file_that_is_not_there_fails() {
     let (status, _, complaint) = gainsay(&["stages", "examples/none.cir"]);
-    assert_eq!(
-        (status, complaint.as_str()),
-        (2, "gainsay: examples/none.cir: expected a text that can be read: there is no such file\n")
-    );
+    assert_eq!(status, 2);
+    assert!(complaint.starts_with("gainsay: examples/none.cir: "), "{complaint}");
+    assert!(complaint.ends_with("there is no such file\n"), "{complaint}");
 }

@@ -11,6 +11,10 @@ use crate::rule::Limit;
 /// Columns that headings take.
 const MARGIN: usize = 10;
 
+/// What slugs are listed under.
+const GROUPS: [&str; 3] =
+    ["figures of a stage", "facts about a circuit", "faults of files and of the analysis"];
+
 /// One slug explained, ending in a newline.
 pub fn topic_text(topic: &Topic, style: Style) -> String {
     let mut paper = Paper::new(style);
@@ -34,21 +38,25 @@ pub fn topic_text(topic: &Topic, style: Style) -> String {
 pub fn topics_text(topics: &[Topic], style: Style) -> String {
     let mut paper = Paper::new(style);
     let widest = topics.iter().map(|topic| topic.slug.len()).max().unwrap_or(0);
-    let groups: [(&str, fn(Sort) -> bool); 3] = [
-        ("figures of a stage", |sort| matches!(sort, Sort::Figure(..))),
-        ("facts about a circuit", |sort| sort == Sort::Fact),
-        ("faults of files and of the analysis", |sort| sort == Sort::Fault),
-    ];
-    for (title, belongs) in groups {
+    for (group, title) in GROUPS.iter().enumerate() {
         paper.blank();
         paper.title(title);
-        for topic in topics.iter().filter(|topic| belongs(topic.sort)) {
+        for topic in topics.iter().filter(|topic| self::group(topic.sort) == group) {
             let space = " ".repeat(widest + 2 - topic.slug.len());
             let first = format!("{}{space}", paper.accent(topic.slug));
             paper.paragraph(&first, &" ".repeat(widest + 2), topic.title);
         }
     }
     paper.done()
+}
+
+/// Place of a sort among the groups.
+fn group(sort: Sort) -> usize {
+    match sort {
+        Sort::Figure(..) => 0,
+        Sort::Fact => 1,
+        Sort::Fault => 2,
+    }
 }
 
 fn sort(sort: Sort) -> String {
