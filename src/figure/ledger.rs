@@ -155,20 +155,14 @@ impl Stage<'_> {
             (false, _) => found.nominal + squares.sqrt(),
         };
         Figure {
-            kind,
             // Adding nought takes the sign off a nought.
             nominal: Some(found.nominal + 0.0),
             worst: Some(found.worst + 0.0),
             rss: Some(rss + 0.0),
             reason: None,
-            sign: None,
-            bound: false,
-            rests_on: Rank::Guaranteed,
-            absent: false,
-            needed: None,
-            zero: false,
             trials: trials(quantity, axes, self.trials, error && kind.doc().bad == Bad::High),
             ledger: lines,
+            ..Figure::unknown(kind, "")
         }
     }
 }
