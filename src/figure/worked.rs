@@ -42,7 +42,7 @@ impl Stage<'_> {
 
     /// A figure's formula with its nominal values put in.
     pub fn worked(&self, review: &Review, figure: &Figure) -> Option<String> {
-        let nominal = figure.nominal?;
+        let Some(nominal) = figure.nominal else { return self.worked_resistances(review, figure) };
         let of = |quality: Quality| {
             let own = |line: &&crate::figure::Line| line.item == Item::OpAmp(self.op_amp, quality);
             figure.ledger.iter().find(own).and_then(|line| line.value).map(|(nominal, ..)| nominal)
@@ -102,8 +102,144 @@ impl Stage<'_> {
             }
             Kind::OffsetError => self.worked_offset(figure, nominal),
             Kind::OutputHeadroom => self.worked_headroom(review, figure, nominal),
+            _ => self.worked_resistances(review, figure),
+        }
+    }
+
+    /// Resistances, loads, rejection and dissipation: sums and ratios of a stage's own resistors.
+    fn worked_resistances(&self, review: &Review, figure: &Figure) -> Option<String> {
+        let part = self.part();
+        let nominal = figure.nominal.or(figure.worst)?;
+        let near = |value: f64| (value - nominal).abs() <= NEAR * nominal.abs();
+        let feedback = || self.between(part.output, part.inverting);
+        let other = |kind: Kind| {
+            review.figures.iter().find(|figure| figure.kind == kind).and_then(|figure| figure.nominal)
+        };
+        match figure.kind {
+            Kind::FeedbackResistance => {
+                // Of the twin: what is left out shows in full.
+                let exact = |value: f64| (value - nominal).abs() <= 1e-6 * nominal.abs();
+                let (name, rf) = feedback()?;
+                if exact(rf) {
+                    return Some(format!("{name} = {}", ohms(rf)));
+                }
+                let (leg, rg) = self.grounded(part.inverting)?;
+                exact(rf + rg)
+                    .then(|| format!("{name} + {leg} = {} + {} = {}", ohms(rf), ohms(rg), ohms(rf + rg)))
+            }
+            Kind::OutputResistance => {
+                let (own, loop_gain) = (self.typical(Quality::OutputResistance)?, other(Kind::LoopGain)?);
+                let value = own / (1.0 + loop_gain);
+                near(value).then(|| {
+                    format!(
+                        "Ro / (1 + T) = {} / (1 + {}) = {}",
+                        ohms(own),
+                        show(loop_gain, Unit::One),
+                        ohms(value)
+                    )
+                })
+            }
+            Kind::InputResistance => {
+                let differential = self.typical(Quality::InputResistance)? * (1.0 + other(Kind::LoopGain)?);
+                let common = self.typical(Quality::CommonModeResistance).unwrap_or(f64::INFINITY);
+                let value = 1.0 / (1.0 / differential + 1.0 / common);
+                near(value).then(|| {
+                    format!(
+                        "Rid (1 + T) in parallel with Rcm = {} || {} = {}",
+                        ohms(differential),
+                        ohms(common),
+                        ohms(value)
+                    )
+                })
+            }
+            Kind::SourceLoading => {
+                let input = other(Kind::InputResistance)?;
+                let source =
+                    self.model().ports.iter().enumerate().find_map(|(at, _)| self.series_resistance(at))?;
+                let value = source / (source + input);
+                near(value).then(|| {
+                    format!(
+                        "Rs / (Rs + Rin) = {} / ({} + {}) = {}",
+                        ohms(source),
+                        ohms(source),
+                        ohms(input),
+                        percent(value)
+                    )
+                })
+            }
+            Kind::GainSpread => {
+                let terms: Vec<f64> = figure.ledger.iter().map(|line| line.effect).collect();
+                let sum: f64 = terms.iter().sum();
+                let words: Vec<String> = terms.iter().take(6).map(|effect| percent(*effect)).collect();
+                let more = if 6 < terms.len() { " + ..." } else { "" };
+                near(sum).then(|| {
+                    format!("sum of tolerance x sensitivity = {}{more} = {}", words.join(" + "), percent(sum))
+                })
+            }
+            Kind::Rejection => {
+                // To first order each resistor adds its tolerance over one plus the gain.
+                let sum: f64 = figure
+                    .ledger
+                    .iter()
+                    .filter(|line| line.item != Item::Nominal)
+                    .map(|line| line.effect.abs())
+                    .sum();
+                let value = -20.0 * sum.log10();
+                let worst = figure.worst?;
+                ((value - worst).abs() < 0.1).then(|| {
+                    format!(
+                        "worst: -20 log10 of the sum of the ledger = -20 log10({}) = {}",
+                        show(sum, Unit::One),
+                        show(value, Unit::Decibel)
+                    )
+                })
+            }
+            Kind::InputHeadroom => self.worked_input_headroom(review, figure, nominal),
             _ => None,
         }
+    }
+
+    fn worked_input_headroom(&self, review: &Review, figure: &Figure, nominal: f64) -> Option<String> {
+        let supply = self.device().supply?;
+        let (quality, distance) = figure.ledger.iter().find_map(|line| match line.item {
+            Item::OpAmp(at, quality @ (Quality::InputBelowPositive | Quality::InputAboveNegative))
+                if at == self.op_amp =>
+            {
+                Some((quality, line.value?.0))
+            }
+            _ => None,
+        })?;
+        let volts = |value: f64| show(value, Unit::Volt);
+        let pins = review.pins.iter().flat_map(|pins| [pins.plus, pins.minus]);
+        pins.map(|pin| match quality {
+            Quality::InputBelowPositive => {
+                let value = supply.positive - distance - pin;
+                (
+                    value,
+                    format!(
+                        "V+ - range - Vin = {} - {} - ({})",
+                        volts(supply.positive),
+                        volts(distance),
+                        volts(pin)
+                    ),
+                )
+            }
+            _ => {
+                let value = pin - supply.negative - distance;
+                (
+                    value,
+                    format!(
+                        "Vin - (V- + range) = {} - ({} + {})",
+                        volts(pin),
+                        volts(supply.negative),
+                        volts(distance)
+                    ),
+                )
+            }
+        })
+        .min_by(|(a, _), (b, _)| (a - nominal).abs().total_cmp(&(b - nominal).abs()))
+        .filter(|(value, _)| (value - nominal).abs() <= NEAR * nominal.abs().max(0.01))
+        .map(|(value, text)| format!("{text} = {}", volts(value)))
     }
 
     fn worked_offset(&self, figure: &Figure, nominal: f64) -> Option<String> {
