@@ -11,7 +11,8 @@ use crate::circuit::values::{self, Passive};
 use crate::circuit::{Circuit, Element, ElementId, ElementKind, Net, NetId};
 use crate::device::Catalogue;
 use crate::diagnostic::{Diagnostic, Severity};
-use crate::netlist::{Kind, Netlist, Passive as Stated, Scope, Statement, Value, Waveform};
+use crate::netlist::{Kind, Netlist, Passive as Stated, Scope, Statement, Value, Waveform, number};
+use crate::quantity::{Unit, show};
 use crate::source::{Sources, Span, matches, quote};
 use rustc_hash::FxHashMap;
 use smallvec::SmallVec;
@@ -202,7 +203,10 @@ impl<'a> Expander<'a> {
             Kind::Resistor(stated) if nets.len() == 3 => {
                 return self.potentiometer(statement, name, &nets, stated, level);
             }
-            Kind::Resistor(stated) => values::resistor(self.part(&name, Passive::Resistor, stated, level)),
+            Kind::Resistor(stated) => {
+                self.milli(&name, stated);
+                values::resistor(self.part(&name, Passive::Resistor, stated, level))
+            }
             Kind::Capacitor(stated) => {
                 ElementKind::Capacitor(self.part(&name, Passive::Capacitor, stated, level))
             }
@@ -245,6 +249,30 @@ impl<'a> Expander<'a> {
         let moves = waveform.ac || waveform.unknown || waveform.span.is_some();
         let unknown = dc.is_none() && (waveform.unknown || waveform.dc.is_some());
         values::drive(dc, waveform.span, moves, unknown)
+    }
+
+    /// A resistor whose value ends with a bare `M`: milli in a netlist, mega in a drawing: both readings
+    /// are said. A small `m` is milli to everybody.
+    fn milli(&mut self, name: &str, stated: &Stated) {
+        let Some(Value::Number(ohms, word)) = stated.value else { return };
+        let text = self.sources.text(word);
+        let bare = number(text).is_some_and(|found| found.multiplier == Some('M') && !found.code);
+        let below_an_ohm = 0.0 < ohms && ohms < 1.0;
+        if !(bare && below_an_ohm) {
+            return;
+        }
+        let message = format!(
+            "{} of {} is read as {}, as netlists have it; was {} meant?",
+            quote(text),
+            quote(name),
+            show(ohms, Unit::Ohm),
+            show(ohms * 1e9, Unit::Ohm)
+        );
+        let fault = Diagnostic::at("value-reading", Severity::Warning, word, message);
+        let digits = text.trim_end_matches('M');
+        self.faults.push(
+            fault.help(format!("write {digits}Meg for the one, {} for the other", show(ohms, Unit::Ohm))),
+        );
     }
 
     /// Two resistors at half travel; the second node is the wiper.

@@ -100,3 +100,22 @@ fn a_rail_without_a_value_is_not_nought() {
     let figure = &outcome.board["stages"][1]["figures"]["output-headroom"];
     assert_eq!(figure["reason"], "the supplies of XU9 are not known");
 }
+
+/// A megohm of a drawing is a milliohm of a netlist: both readings are said, and the netlist's is used.
+#[test]
+fn a_bare_m_of_a_resistor_is_said_both_ways() {
+    let outcome = Bench::new("* m\nV1 VCC 0 15\nV2 0 VEE 15\nVS IN 0 SIN(0 1 1k)\nR1 N1 0 1M\nR2 OUT N1 1Meg\nR3 OUT 0 22m\nR4 OUT 0 1M5\nXU1 IN N1 VCC VEE OUT OP07C\n.end\n").check();
+    let said: Vec<&serde_json::Value> = outcome.board["findings"]
+        .as_array()
+        .expect("a board has findings")
+        .iter()
+        .filter(|finding| finding["rule"] == "value-reading")
+        .collect();
+    assert_eq!(said.len(), 1, "a small m is milli to everybody: {said:#?}");
+    assert_eq!(said[0]["spans"][0]["line"], 5);
+    assert!(
+        said[0]["message"]
+            .as_str()
+            .is_some_and(|message| message.contains("1 mohm") && message.contains("1 Mohm"))
+    );
+}

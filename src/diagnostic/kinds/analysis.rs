@@ -33,6 +33,13 @@ pub(super) const KINDS: &[KindDoc] = &[
         cure: "add the line of budget or profile that the message shows",
     },
     KindDoc {
+        slug: "value-reading",
+        title: "a value that two readers read differently",
+        meaning: "A resistor's value ends with a bare `M`. Netlists have it as milli, drawings as mega; the netlist's reading is used and both are said.",
+        source: "IEC 60062 has M as mega; SPICE's scale factors have it as milli.",
+        cure: "write Meg for mega, or the value in ohm",
+    },
+    KindDoc {
         slug: "unreadable-file",
         title: "a file can't be read",
         meaning: "The file is missing, barred, too large, or no text.",
