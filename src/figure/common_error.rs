@@ -25,7 +25,7 @@ pub(super) fn compute(stage: &Stage, legs: Option<Legs>) -> Figure {
     let (Some(legs), Some(pair)) = (legs, pair) else { return Figure::absent(kind, "no declared pair") };
     let pair = &stage.board.circuit.pairs[pair];
     let Some((low, high)) = pair.common else {
-        return Figure::absent(kind, format!("the common range of {} is not declared", pair.name));
+        return Figure::unknown(kind, format!("the common range of {} is not declared", pair.name));
     };
     let quantity = CommonMode { stage: *stage, legs, scale: (high - low) / 2.0, relative: false };
     let axes = quantity.axes();

@@ -54,6 +54,7 @@ fn deviation(board: &Board, known: &[(f64, Rank)], amp: AmpId) -> (f64, Rank) {
         let linear = stage.reading(stage.output(), 1.0, 0.0, stage.excited(end), &extras);
         let mut gradient = vec![0.0; all.len()];
         if linear.at(&point, &mut gradient).is_none() {
+            incomplete = true;
             continue;
         }
         let moves = || {

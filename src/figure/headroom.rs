@@ -135,6 +135,9 @@ impl<'b> Stage<'b> {
     /// The figure of the least of several distances. Only those are studied that to first order could be
     /// the least: within a quarter of their own fall of the least one.
     pub(super) fn least(&self, kind: Kind, distances: &[Distance], ranges: Rank) -> Figure {
+        if distances.iter().any(|distance| !(distance.nominal + distance.fall).is_finite()) {
+            return Figure::unknown(kind, UNSOLVED);
+        }
         let lowest =
             distances.iter().map(|distance| distance.nominal + distance.fall).fold(f64::INFINITY, f64::min);
         let near = |distance: &&Distance| distance.nominal + distance.fall * 1.25 <= lowest;

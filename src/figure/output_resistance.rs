@@ -39,10 +39,10 @@ pub(super) fn compute(stage: &Stage) -> Figure {
     }
 }
 
-/// A block without its loads and without what later blocks draw. Load branches stay at a conductance of
-/// nought to ground-free nets, so nets that only loads join keep a trace of it.
+/// A block without its loads and without what later blocks draw. Load branches keep a trace of a
+/// conductance, so that nets which only loads join still have a voltage.
 fn unloaded(model: &Model) -> Model {
-    /// Siemens that stand for nothing: a thousandth of the weakest input.
+    /// Siemens that stand for nothing: far below any input's.
     const TRACE: f64 = 1e-18;
     let mut bare = model.clone();
     bare.network.loads.clear();

@@ -58,7 +58,7 @@ pub(super) fn compute(stage: &Stage) -> Figure {
         let volts = match across(stage, branch) {
             Ok(Some(volts)) => volts,
             Ok(None) => return Figure::unknown(kind, "its equations have no solution"),
-            Err(name) => return Figure::absent(kind, format!("the range of {name} is not declared")),
+            Err(name) => return Figure::unknown(kind, format!("the range of {name} is not declared")),
         };
         let axes = axes(stage.model(), false);
         let own = stage.model().parameters.iter().position(|parameter| {
@@ -66,7 +66,9 @@ pub(super) fn compute(stage: &Stage) -> Figure {
         });
         let share = Share { volts, ohms, rating: part.rating.unwrap_or(1.0), own };
         if part.rating.is_none() {
-            let power = peak(&share, &axes);
+            let Some(power) = peak(&share, &axes) else {
+                return Figure::unknown(kind, "its equations have no solution");
+            };
             if unrated.is_none_or(|(most, _)| most < power) {
                 unrated = Some((power, id));
             }
@@ -80,25 +82,21 @@ pub(super) fn compute(stage: &Stage) -> Figure {
             worst = Some(figure);
         }
     }
-    worst.unwrap_or_else(|| match unrated {
-        Some((power, id)) if SILENT <= power => Figure {
-            needed: Some((id, power)),
-            ..Figure::absent(
-                kind,
-                format!(
-                    "no rating is stated; {} needs {}",
-                    stage.board.circuit.element(id).name,
-                    show(power, Unit::Watt)
-                ),
-            )
-        },
-        _ => Figure::absent(kind, "no rating is stated, and none is needed above 50 mW"),
-    })
+    let needed = unrated.filter(|(power, _)| SILENT <= *power).map(|(power, id)| (id, power));
+    let figure = worst.unwrap_or_else(|| match needed {
+        Some((id, power)) => {
+            let name = &stage.board.circuit.element(id).name;
+            Figure::absent(kind, format!("no rating is stated; {name} needs {}", show(power, Unit::Watt)))
+        }
+        None => Figure::absent(kind, "no rating is stated, and none is needed above 50 mW"),
+    });
+    Figure { needed, ..figure }
 }
 
-fn peak(share: &Share, axes: &[Axis]) -> f64 {
+/// Nominal dissipation over rating.
+fn peak(share: &Share, axes: &[Axis]) -> Option<f64> {
     let point: Vec<f64> = axes.iter().map(|axis| axis.nominal).collect();
-    share.at(&point, &mut vec![0.0; axes.len()]).unwrap_or(0.0)
+    share.at(&point, &mut vec![0.0; axes.len()])
 }
 
 /// The voltage across a branch at the end of the ranges where it is larger.

@@ -357,6 +357,9 @@ pub fn explain(circuit: &Circuit, layout: &Layout, fault: &Fault) -> String {
         }
         Fault::Singular(Some(at)) => format!("its equations have no single solution at net {}", net(at)),
         Fault::Singular(None) => "its equations have no single solution".to_owned(),
+        Fault::Inexact(left) => {
+            format!("its solution leaves a share of {left:.1e} unexplained: the values are too far apart")
+        }
         Fault::NoTwin(Some(at)) if matches!(layout.role(*at), Role::Output(_)) => {
             format!("no transfer at DC: nothing closes the loop from {}", net(at))
         }

@@ -70,6 +70,10 @@ pub(super) fn study(quantity: &dyn Quantity, axes: &[Axis], bad: Bad) -> Option<
             if low.0.abs() > high.0.abs() { low } else { high }
         }
     };
+    // A corner without a number must not leave the nominal standing for it.
+    if !(nominal.is_finite() && found.0.is_finite()) {
+        return None;
+    }
     let worse = match bad {
         Bad::High => found.0 >= nominal,
         Bad::Low => found.0 <= nominal,
@@ -152,4 +156,29 @@ fn along(quantity: &dyn Quantity, from: &[f64], to: &[f64]) -> Option<Vec<f64>> 
         }
     }
     Some(effects)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::{Axis, Quantity, study};
+    use crate::device::Rank;
+    use crate::figure::Bad;
+
+    struct Root;
+
+    impl Quantity for Root {
+        fn at(&self, point: &[f64], gradient: &mut [f64]) -> Option<f64> {
+            gradient[0] = 1.0;
+            Some(point[0].sqrt())
+        }
+    }
+
+    /// A corner that has no number makes the figure unknown; the nominal never stands for it.
+    #[test]
+    fn a_corner_without_a_number_is_no_worst_case() {
+        let axis =
+            |low| Axis { base: 1.0, nominal: 1.0, typical: 1.0, low, high: 2.0, rank: Rank::Guaranteed };
+        assert_eq!(study(&Root, &[axis(-1.0)], Bad::Low), None);
+        assert!(study(&Root, &[axis(0.5)], Bad::Low).is_some());
+    }
 }

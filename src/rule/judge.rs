@@ -100,11 +100,12 @@ pub fn judge(rules: &[Rule], subject: &Subject, figure: &Figure) -> Judged {
         data: figure.rests_on,
         finding: None,
     };
+    let unrated = figure.needed.map(|needed| unrated(subject, needed));
     if figure.absent && figure.worst.is_none() {
         if !judged.stated {
             judged.status = Status::Within;
         }
-        judged.finding = figure.needed.map(|needed| unrated(subject, needed));
+        judged.finding = unrated;
         return judged;
     }
     let limit = match asked.map(resolve) {
@@ -134,6 +135,7 @@ pub fn judge(rules: &[Rule], subject: &Subject, figure: &Figure) -> Judged {
     let (severity, by) = match broken {
         Broken::None => {
             judged.status = Status::Within;
+            judged.finding = unrated;
             return judged;
         }
         Broken::Nominal => (ceiling, By::Nominal),

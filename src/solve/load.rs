@@ -4,12 +4,28 @@ use crate::block::{AmpId, Role, open_loop, outside_loop, rectifier};
 use crate::circuit::NetId;
 use crate::solve::board::Board;
 use crate::solve::model::Fault;
-use crate::solve::{Drain, Excitation, Feed, LoadStamp, Node, Solved, regenerates};
+use crate::solve::{Drain, Excitation, Feed, List, LoadStamp, Node, Solved, regenerates};
 
 /// Output, net, siemens: what a volt at the net draws from the output.
 type Draws = Vec<(AmpId, NetId, f64)>;
 /// Output, feed, ampere: what one unit of the feed draws from the output.
 type Drains = Vec<(AmpId, Feed, f64)>;
+
+/// A solution that leaves more than this unexplained, after one refinement, is none: sound blocks stay near
+/// 1e-15.
+const MOST_REMAINDER: f64 = 1e-9;
+
+/// What a block's solution leaves unexplained, infinite where it is no number, with a volt at every port and in series with every input.
+fn remainder(solved: &Solved<f64>) -> f64 {
+    let network = solved.network();
+    let excitation = Excitation {
+        ports: List::from_elem(1.0, network.ports),
+        errors: smallvec::SmallVec::from_elem(1.0, network.members),
+        constant: true,
+        ..Excitation::none()
+    };
+    solved.forward(&excitation).residual
+}
 
 impl Board<'_> {
     /// From the last block to the first: each is solved under its load and reduced to what it draws from
@@ -74,11 +90,17 @@ impl Board<'_> {
             return Some(Fault::OpenLoop);
         }
         let twin = model.nominal.twin(|amp| model.op_amps[amp].is_some());
-        if let Err(singular) = Solved::new(&model.network, twin) {
-            return Some(Fault::NoTwin(model.net(singular.unknown)));
-        }
-        if let Err(singular) = Solved::new(&model.network, model.nominal.clone()) {
-            return Some(Fault::Singular(model.net(singular.unknown)));
+        let twin = match Solved::new(&model.network, twin) {
+            Ok(twin) => twin,
+            Err(singular) => return Some(Fault::NoTwin(model.net(singular.unknown))),
+        };
+        let real = match Solved::new(&model.network, model.nominal.clone()) {
+            Ok(real) => real,
+            Err(singular) => return Some(Fault::Singular(model.net(singular.unknown))),
+        };
+        let left = remainder(&twin).max(remainder(&real));
+        if MOST_REMAINDER < left {
+            return Some(Fault::Inexact(left));
         }
         regenerates(&model.network, &model.nominal).then_some(Fault::Regenerative)
     }

@@ -35,6 +35,8 @@ pub enum Fault {
     Singular(Option<NetId>),
     /// The twin has no DC solution: feedback is missing at DC.
     NoTwin(Option<NetId>),
+    /// The solution leaves this share unexplained after refinement.
+    Inexact(f64),
     /// The DC loop gain regenerates.
     Regenerative,
     /// The loop closes through an element that isn't modelled.

@@ -34,7 +34,8 @@ pub struct State<T: Scalar> {
     pub ports: List<T>,
     /// What was injected.
     pub(super) injections: SmallVec<[(Node, T); 4]>,
-    /// Largest remainder of any row, as a share of its terms.
+    /// Largest remainder of any row over the largest unknown and the right side; infinite where a number is
+    /// none.
     pub residual: f64,
 }
 
@@ -276,23 +277,22 @@ fn assemble<T: Scalar>(
     matrix
 }
 
-/// A product with the inverse and one step of refinement; the remainder as a share of its terms.
+/// A product with the inverse and one step of refinement; what is left of the worst row, over the largest
+/// unknown and the right side: the normwise backward error, rows being scaled to one (Rigal and Gaches 1967;
+/// cited from memory). A row of vanishing terms must not count by itself, it is rounding throughout.
 fn refine<T: Scalar>(matrix: &Square<T>, inverse: &Square<T>, rhs: List<T>) -> (List<T>, f64) {
     let mut unknowns = inverse.times(&rhs);
     let remainder = difference(rhs.clone(), &matrix.times(&unknowns));
     add(&mut unknowns, &inverse.times(&remainder));
-    let mut residual = 0.0f64;
-    for (row, right) in rhs.iter().enumerate() {
-        let (mut size, mut left) = (right.norm1(), *right);
-        for (column, unknown) in unknowns.iter().enumerate() {
-            let term = matrix.at(row, column) * *unknown;
-            size += term.norm1();
-            left -= term;
-        }
-        if 0.0 < size {
-            residual = residual.max(left.norm1() / size);
-        }
-    }
+    let left = difference(rhs.clone(), &matrix.times(&unknowns));
+    let largest = |list: &[T]| list.iter().fold(0.0f64, |most, entry| most.max(entry.norm1()));
+    let finite = |list: &[T]| list.iter().all(|entry| entry.norm1().is_finite());
+    let size = largest(&unknowns) + largest(&rhs);
+    let residual = match () {
+        _ if !finite(&unknowns) || !finite(&left) => f64::INFINITY,
+        _ if 0.0 < size => largest(&left) / size,
+        _ => 0.0,
+    };
     (unknowns, residual)
 }
 
